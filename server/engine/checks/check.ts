@@ -1,5 +1,6 @@
 /** The form of a check. One file a check; the catalogue (index.ts) is the only other place that names it. */
 import type { CheckId, Evidence, Remedy, Severity } from '#contract/finding.ts';
+import type { ElementType } from '#contract/reading.ts';
 import type { TimeRuleId } from '#contract/weights.ts';
 import type { Survey } from '../survey.ts';
 
@@ -20,9 +21,13 @@ export interface CheckSubject {
   /** parameter values of the run, from the archive or given by the contributor */
   parameters: Record<string, number>;
   /** grids of the other archives of the same campaign or dataset, to compare with; empty when alone */
-  otherGrids: { archive: string; axes: { name: string; nodes: Float64Array | null; count: number }[] }[];
+  otherGrids: { archive: string; axes: { name: string; nodes: Float64Array | null; count: number; dtype?: ElementType | null }[] }[];
   /** the time rule that is to be used, when chosen */
   timeRule: TimeRuleId | null;
+  /** id of the archive, for the recipe's drop lists; without one the nil UUID stands for "the archive of this finding" */
+  archive?: string;
+  /** snapshots at the end of the record that were never written; set by judgeAll, see written-part.ts */
+  unwritten?: number;
 }
 
 export interface Threshold {
