@@ -31,7 +31,7 @@ export type Delivery = z.infer<typeof delivery>;
 export const tusPath = '/api/uploads';
 
 export const archiveSummary = z.object({
-  id, campaign: slug, run: z.string(), solver: z.string(), name: z.string(), bytes: z.number(), format: archiveFormat.nullable(),
+  id, campaign: slug, campaignId: id, run: z.string(), solver: z.string(), name: z.string(), bytes: z.number(), format: archiveFormat.nullable(),
   /** checking: a job reads it; checked: findings stand; unreadable: it could not be read (a finding says why) */
   state: z.enum(['checking', 'checked', 'unreadable', 'withdrawn']),
   layout: z.string().nullable(), snapshots: z.number().nullable(), nodes: z.number().nullable(), fields: z.array(z.string()),

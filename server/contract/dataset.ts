@@ -30,13 +30,13 @@ export const buildSummary = z.object({
 export type BuildSummary = z.infer<typeof buildSummary>;
 
 export const datasetSummary = z.object({
-  id, campaign: slug, slug, title: z.string(), description: z.string(), createdBy: person, createdAt: timestamp,
+  id, campaign: slug, campaignId: id, slug, title: z.string(), description: z.string(), createdBy: person, createdAt: timestamp,
   latestRelease: z.object({ version: z.number().int(), state: z.string(), rows: z.number(), columns: z.number(), releasedAt: timestamp }).nullable(),
   openDrafts: z.number().int(), fields: z.array(z.string()),
 });
 export const draftSummary = z.object({
   id, number: z.number().int(), state: draftState, createdBy: person, createdAt: timestamp, updatedAt: timestamp,
-  campaign: slug, dataset: slug, datasetTitle: z.string(), built: z.boolean(), findings: findingCounts, releaseVersion: z.number().int().nullable(),
+  campaign: slug, campaignId: id, dataset: slug, datasetTitle: z.string(), built: z.boolean(), findings: findingCounts, releaseVersion: z.number().int().nullable(),
 });
 export type DraftSummary = z.infer<typeof draftSummary>;
 export const releaseSummary = z.object({

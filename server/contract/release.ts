@@ -7,7 +7,7 @@ import { beam, fieldValues, flag, id, list, person, reason, sha256, slug, timest
 
 export const releaseFile = z.object({ path: z.string(), bytes: z.number(), sha256 });
 export const release = releaseSummary.extend({
-  campaign: slug, campaignTitle: z.string(), dataset: slug, title: z.string(), description: z.string(), draft: id,
+  campaign: slug, campaignId: id, campaignTitle: z.string(), dataset: slug, title: z.string(), description: z.string(), draft: id,
   licence: z.string(), handlingLabel: z.string(), contact: z.string(), citation: z.string(), note: z.string(),
   build: buildSummary, recipe, files: z.array(releaseFile), manifestSha256: sha256,
   waivers: z.array(z.object({ check: z.string(), message: z.string(), reason: z.string(), by: person, at: timestamp })),

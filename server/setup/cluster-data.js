@@ -1,7 +1,6 @@
 /** The data folder of a cluster: made whole or not at all, never overwritten. */
 import { chownSync, existsSync, readFileSync, readdirSync, renameSync, rmSync, statSync } from 'node:fs';
 import { join } from 'node:path';
-import { warn } from './announce.js';
 import { makeDatabaseFolder, runForDatabase } from './cluster-home.js';
 import { lastLines } from './command.js';
 import { findPrograms } from './postgres-programs.js';
@@ -14,11 +13,15 @@ function isWhole(data) {
   return existsSync(join(data, 'PG_VERSION')) && existsSync(join(data, 'global', 'pg_control'));
 }
 
-function setAside(data) {
-  if (!existsSync(data) || readdirSync(data).length === 0) return;
-  const aside = `${data}.incomplete-${new Date().toISOString().replaceAll(':', '')}`;
-  renameSync(data, aside);
-  warn('database', `${data} was incomplete, it now lies in ${aside} and a new one is made.`);
+/**
+ * A data folder gets its name only when it is whole, so one that is not has lost files since. Tests lose nothing by
+ * beginning anew; a person must decide.
+ */
+function refuseDamaged(data, { durable }) {
+  if (!existsSync(data) || readdirSync(data).length === 0 || !durable) return;
+  throw new SetupRefusal(
+    `The database in ${data} is damaged, its global/pg_control or PG_VERSION is missing: restore the folder from a backup, or move it away to begin empty.`,
+  );
 }
 
 async function initialise(home, programs, { durable }) {
@@ -26,7 +29,7 @@ async function initialise(home, programs, { durable }) {
   for (const name of readdirSync(home.folder)) {
     if (name.startsWith('data.new-')) rmSync(join(home.folder, name), { recursive: true, force: true });
   }
-  setAside(data);
+  refuseDamaged(data, { durable });
   const fresh = join(home.folder, `data.new-${process.pid}`);
   await makeDatabaseFolder(home, fresh);
   const password = newSecret();
@@ -48,7 +51,7 @@ async function initialise(home, programs, { durable }) {
     rmSync(passwordFile, { force: true });
   }
   writePrivately(join(home.folder, 'admin-password'), password);
-  if (existsSync(data)) rmSync(data, { recursive: true });
+  rmSync(data, { recursive: true, force: true });
   renameSync(fresh, data);
 }
 

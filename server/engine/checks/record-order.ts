@@ -7,7 +7,7 @@
  * that is no wider than 1.75 x the wider of its two adjacent intervals. A stamp that was merely swapped falls into a hole
  * of twice the usual spacing, as do stamps sorted as text (1, 10, 11, 2): those are out of order, and sorting mends them
  * where dropping a segment would lose data. A single stamp that goes back and returns beyond the earlier end by one leap
- * over stamps, wider than 1.75 x the interval that follows, is a stray, and so out of order. When more than 40 % of the steps go back, the record is shuffled.
+ * over stamps, wider than 1.75 x the interval that follows, is a stray, and so out of order. When more than a third of the steps go back (half do in a random order), the record is shuffled.
  * A restart explains the stamps of both segments in the overlap, so equal stamps there are no duplicates.
  * Method: common practice, no source; 1.75 lies between 1.5 (a growing step, at the end of a chain) and 2 (a swap).
  */
@@ -36,7 +36,7 @@ export interface RecordOrder {
 }
 
 const holeRatio = 1.75;
-const shuffledShare = 0.4;
+const shuffledShare = 1 / 3;
 const votes = 5;
 
 /** First position in the ascending `chain` whose stamp is >= `value`. */

@@ -27,7 +27,7 @@ function holdsFill(survey: Survey, field: FieldSurvey): boolean {
   const last = field.snapshots - 1;
   const value = field.nonFinite[last] === field.nodes ? NaN : field.min[last];
   const declared = survey.contents.arrays.find((array) => array.path === field.path)?.fillValue ?? field.fill.find((fill) => fill.declared)?.value ?? null;
-  if (declared !== null && Object.is(declared, value)) return true;
+  if (declared !== null && (declared === value || (Number.isNaN(declared) && Number.isNaN(value)))) return true;
   return (declared === null && value === 0) || netcdfFills.includes(value);
 }
 
