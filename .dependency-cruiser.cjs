@@ -36,16 +36,45 @@ const contract = 'server/contract';
 module.exports = {
   forbidden: [
     room('server/contract', [], 'The contract is what both sides share: it knows neither of them.'),
-    room('server/engine', [contract], 'The engine is pure and runs in server, worker and command line alike: hand it plain data.'),
-    room('server/linalg', [contract, 'server/engine'], 'Linear algebra is one small interface over a native library: it knows no room that uses it.'),
-    room('server/reading', [contract, 'server/engine'], 'Reading runs in its own process on hostile files: it must drag nothing else into it.'),
+    room(
+      'server/engine',
+      [contract],
+      'The engine is pure and runs in server, worker and command line alike: hand it plain data.',
+    ),
+    room(
+      'server/linalg',
+      [contract, 'server/engine'],
+      'Linear algebra is one small interface over a native library: it knows no room that uses it.',
+    ),
+    room(
+      'server/reading',
+      [contract, 'server/engine'],
+      'Reading runs in its own process on hostile files: it must drag nothing else into it.',
+    ),
     room('server/storage', [contract], 'Storage keeps bytes by hash and knows nothing of what they mean.'),
-    room('server/mail', [contract, 'server/config.ts'], 'Mail writes and sends letters; services say when and to whom.'),
+    room(
+      'server/mail',
+      [contract, 'server/config.ts'],
+      'Mail writes and sends letters; services say when and to whom.',
+    ),
     room('server/db', [contract], 'Repositories hold SQL and no judgement: decisions belong to services.'),
-    room('server/access', [contract, 'server/db', 'server/mail', 'server/config.ts'], 'Access decides who may do what; what is then done belongs to services.'),
+    room(
+      'server/access',
+      [contract, 'server/db', 'server/mail', 'server/config.ts'],
+      'Access decides who may do what; what is then done belongs to services.',
+    ),
     room(
       'server/services',
-      [contract, 'server/db', 'server/access', 'server/engine', 'server/storage', 'server/mail', 'server/jobs/queue.ts', 'server/config.ts'],
+      [
+        contract,
+        'server/db',
+        'server/access',
+        'server/engine',
+        'server/storage',
+        'server/mail',
+        'server/jobs/queue.ts',
+        'server/config.ts',
+      ],
       'Services are what the product does, called by http, jobs and command line: heavy work goes through jobs/queue.ts into a job.',
     ),
     room(
@@ -54,7 +83,11 @@ module.exports = {
       'Job handlers call services for anything that is stored; database and storage are reached through them.',
       ['server/jobs/queue.ts'],
     ),
-    room('server/jobs/queue.ts', [contract, 'server/db'], 'The queue writes a job in the transaction of the service that asks for it, and knows no handler.'),
+    room(
+      'server/jobs/queue.ts',
+      [contract, 'server/db'],
+      'The queue writes a job in the transaction of the service that asks for it, and knows no handler.',
+    ),
     room(
       'server/http',
       [contract, 'server/services', 'server/access', 'server/config.ts'],
@@ -62,12 +95,21 @@ module.exports = {
     ),
     room(
       'server/cli',
-      [contract, 'server/engine', 'server/reading', 'server/linalg', 'server/services', 'server/db', 'server/config.ts'],
+      [
+        contract,
+        'server/engine',
+        'server/reading',
+        'server/linalg',
+        'server/services',
+        'server/db',
+        'server/config.ts',
+      ],
       'The command line works on files without a server; what needs the database goes through services.',
     ),
     {
       name: 'repositories-belong-to-services',
-      comment: 'Only services call repositories, so that permission, transaction and audit row cannot be gone around: call the service.',
+      comment:
+        'Only services call repositories, so that permission, transaction and audit row cannot be gone around: call the service.',
       severity: 'error',
       from: { path: '^(server|src)/', pathNot: '^server/(services|db)/' },
       to: { path: '^server/db/repositories/' },
@@ -81,25 +123,51 @@ module.exports = {
     },
     {
       name: 'nobody-imports-the-wiring',
-      comment: 'main.ts, worker.ts and app.ts put the rooms together and are put together by nobody: take what is needed as a parameter.',
+      comment:
+        'main.ts, worker.ts and app.ts put the rooms together and are put together by nobody: take what is needed as a parameter.',
       severity: 'error',
       from: { path: '^(server|src)/', pathNot: '^server/(main|worker|app)\\.ts$' },
       to: { path: '^server/(main|worker|app)\\.ts$' },
     },
     {
       name: 'engine-is-pure',
-      comment: 'No input or output, clock, process or package in the engine: pass in what it needs (linear algebra: server/linalg).',
+      comment:
+        'No input or output, clock, process or package in the engine: pass in what it needs (linear algebra: server/linalg).',
       severity: 'error',
       from: { path: '^server/engine/' },
       to: { dependencyTypes: ['core', 'npm', 'npm-dev', 'npm-optional', 'npm-peer', 'npm-no-pkg', 'npm-unknown'] },
     },
-    onlyIn(['h5wasm', 'h5wasm-plugins'], ['server/reading', 'server/demo'], 'h5wasm must not meet a hostile file outside the guarded process: ask server/reading.'),
-    onlyIn(['koffi', 'ml-matrix'], ['server/linalg'], 'koffi checks nothing, so every call goes through the checked wrappers of server/linalg.'),
+    onlyIn(
+      ['h5wasm', 'h5wasm-plugins'],
+      ['server/reading', 'server/demo'],
+      'h5wasm must not meet a hostile file outside the guarded process: ask server/reading.',
+    ),
+    onlyIn(
+      ['koffi', 'ml-matrix'],
+      ['server/linalg'],
+      'koffi checks nothing, so every call goes through the checked wrappers of server/linalg.',
+    ),
     onlyIn(['nodemailer'], ['server/mail'], 'Letters are sent through server/mail, which demo and tests can open.'),
-    onlyIn(['pg', 'drizzle-orm', 'drizzle-zod'], ['server/db', 'server/services', 'server/access', 'server/jobs/queue.ts'], 'SQL stays in repositories and the transactions of services.'),
-    onlyIn(['graphile-worker'], ['server/jobs', 'server/db', 'server/worker.ts'], 'The queue has one small interface, server/jobs/queue.ts.'),
-    onlyIn(['better-auth', '@better-auth/api-key'], ['server/access'], 'Sessions and tokens are known through server/access.'),
-    onlyIn(['express', 'express-rate-limit', 'helmet', 'pino-http'], ['server/http', 'server/app.ts', 'server/main.ts', 'server/access'], 'Nothing but http knows of requests: services take plain values.'),
+    onlyIn(
+      ['pg', 'drizzle-orm', 'drizzle-zod'],
+      ['server/db', 'server/services', 'server/access', 'server/jobs/queue.ts'],
+      'SQL stays in repositories and the transactions of services.',
+    ),
+    onlyIn(
+      ['graphile-worker'],
+      ['server/jobs', 'server/db', 'server/worker.ts'],
+      'The queue has one small interface, server/jobs/queue.ts.',
+    ),
+    onlyIn(
+      ['better-auth', '@better-auth/api-key'],
+      ['server/access'],
+      'Sessions and tokens are known through server/access.',
+    ),
+    onlyIn(
+      ['express', 'express-rate-limit', 'helmet', 'pino-http'],
+      ['server/http', 'server/app.ts', 'server/main.ts', 'server/access'],
+      'Nothing but http knows of requests: services take plain values.',
+    ),
     {
       name: 'pages-know-only-the-contract',
       comment: 'The browser shares #contract with the server and nothing else: add what is needed there.',
@@ -116,14 +184,16 @@ module.exports = {
     },
     {
       name: 'features-are-strangers',
-      comment: 'A feature never imports another one: share through src/components, src/api or another folder beside features/, or link to its page.',
+      comment:
+        'A feature never imports another one: share through src/components, src/api or another folder beside features/, or link to its page.',
       severity: 'error',
       from: { path: '^src/features/([^/]+)/' },
       to: { path: '^src/features/', pathNot: '^src/features/$1/' },
     },
     {
       name: 'features-do-not-know-the-app',
-      comment: 'src/app knows all features, so none of them may import it back: take what is needed through a hook of src/api or a prop.',
+      comment:
+        'src/app knows all features, so none of them may import it back: take what is needed through a hook of src/api or a prop.',
       severity: 'error',
       from: { path: '^src/', pathNot: '^src/(app/|main\\.tsx$)' },
       to: { path: '^src/app/' },
@@ -144,7 +214,8 @@ module.exports = {
     },
     {
       name: 'no-circle',
-      comment: 'Files that import each other in a circle cannot be understood or tested one by one: move the shared part into a third.',
+      comment:
+        'Files that import each other in a circle cannot be understood or tested one by one: move the shared part into a third.',
       severity: 'error',
       from: {},
       to: { circular: true, viaOnly: { dependencyTypesNot: ['type-only'] } },
@@ -160,7 +231,8 @@ module.exports = {
       name: 'no-development-package-in-the-server',
       comment: 'The server also runs where development packages are left out: make it a dependency or do without.',
       severity: 'error',
-      from: { path: '^server/', pathNot: '^server/setup/' },
+      // The command's launcher takes tsx only where it runs from the sources.
+      from: { path: '^server/', pathNot: '^server/(setup/|cli/pennyweight\\.js$)' },
       to: { dependencyTypes: ['npm-dev', 'npm-no-pkg'], dependencyTypesNot: ['type-only'] },
     },
     {
@@ -183,6 +255,10 @@ module.exports = {
     tsConfig: { fileName: 'tsconfig.json' },
     // Imports of types count as well: a room that needs another room's types depends on it.
     tsPreCompilationDeps: true,
-    enhancedResolveOptions: { exportsFields: ['exports'], conditionNames: ['import', 'types', 'node', 'default'], mainFields: ['module', 'main', 'types'] },
+    enhancedResolveOptions: {
+      exportsFields: ['exports'],
+      conditionNames: ['import', 'types', 'node', 'default'],
+      mainFields: ['module', 'main', 'types'],
+    },
   },
 };

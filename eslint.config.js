@@ -8,12 +8,23 @@ import typescript from 'typescript-eslint';
 
 const refusal = {
   selector: "ThrowStatement > NewExpression[callee.name='Error']",
-  message: 'Throw a PennyweightError (#contract/error.ts) with a code and one sentence: what was wrong, where, what to do next.',
+  message:
+    'Throw a PennyweightError (#contract/error.ts) with a code and one sentence: what was wrong, where, what to do next.',
 };
 
 /** Import rules that dependency-cruiser does not know: node's own modules. */
 function withoutNode(modules, message) {
-  return { 'no-restricted-imports': ['error', { paths: modules.flatMap((name) => [{ name, message }, { name: `node:${name}`, message }]) }] };
+  return {
+    'no-restricted-imports': [
+      'error',
+      {
+        paths: modules.flatMap((name) => [
+          { name, message },
+          { name: `node:${name}`, message },
+        ]),
+      },
+    ],
+  };
 }
 
 const files = ['fs', 'fs/promises'];
@@ -44,7 +55,10 @@ export default defineConfig(
     rules: {
       // Promises that nobody waits for lose their errors and outlive their transaction.
       '@typescript-eslint/no-floating-promises': 'error',
-      '@typescript-eslint/no-misused-promises': ['error', { checksVoidReturn: { attributes: false, arguments: false } }],
+      '@typescript-eslint/no-misused-promises': [
+        'error',
+        { checksVoidReturn: { attributes: false, arguments: false } },
+      ],
       '@typescript-eslint/await-thenable': 'error',
       '@typescript-eslint/only-throw-error': 'error',
       '@typescript-eslint/switch-exhaustiveness-check': ['error', { considerDefaultExhaustiveForUnions: true }],
@@ -66,11 +80,17 @@ export default defineConfig(
         {
           patterns: [
             { group: ['node:*'], message: 'Pages run in the browser: ask the server through a route of #contract.' },
-            { group: ['**/server/*'], message: 'Import from #contract: the browser shares nothing else with the server.' },
+            {
+              group: ['**/server/*'],
+              message: 'Import from #contract: the browser shares nothing else with the server.',
+            },
           ],
         },
       ],
-      'no-restricted-globals': ['error', { name: 'fetch', message: 'Send requests through src/api, which knows addresses and errors.' }],
+      'no-restricted-globals': [
+        'error',
+        { name: 'fetch', message: 'Send requests through src/api, which knows addresses and errors.' },
+      ],
     },
   },
   {
@@ -86,13 +106,19 @@ export default defineConfig(
         { object: 'Date', property: 'now', message: 'The engine knows no clock: take the time as a parameter.' },
         { object: 'performance', property: 'now', message: 'The engine knows no clock: measure in the caller.' },
       ],
-      'no-restricted-globals': ['error', { name: 'process', message: 'The engine knows no surroundings: take it as a parameter.' }],
+      'no-restricted-globals': [
+        'error',
+        { name: 'process', message: 'The engine knows no surroundings: take it as a parameter.' },
+      ],
     },
   },
   {
     files: ['server/{http,services,access,db}/**/*.ts'],
     ignores: ['server/db/migrate.ts'],
-    rules: withoutNode([...files, ...processes], 'Archives and other bytes go through server/storage; other processes are started by server/reading or server/jobs.'),
+    rules: withoutNode(
+      [...files, ...processes],
+      'Archives and other bytes go through server/storage; other processes are started by server/reading or server/jobs.',
+    ),
   },
   prettier,
 );

@@ -13,7 +13,13 @@ export default defineConfig({
     projects: [
       {
         extends: true,
-        test: { name: 'unit', include: ['tests/unit/**/*.test.{ts,js}'], environment: 'node', setupFiles: [vigilance], testTimeout: 20_000 },
+        test: {
+          name: 'unit',
+          include: ['tests/unit/**/*.test.{ts,js}'],
+          environment: 'node',
+          setupFiles: [vigilance],
+          testTimeout: 20_000,
+        },
       },
       {
         extends: true,

@@ -11,12 +11,11 @@ export interface Slab {
 
 /**
  * Sizes of one box: one chunk, then grown by whole chunks from the last axis to the first while it stays within
- * `budget` elements. Axes in `last` grow only after all others.
+ * `budget` elements.
  */
-export function slabSizes(shape: readonly number[], chunk: readonly number[] | null, budget: number, last: readonly number[] = []): number[] {
+export function slabSizes(shape: readonly number[], chunk: readonly number[] | null, budget: number): number[] {
   const sizes = shape.map((size, i) => Math.min(size, chunk?.[i] ?? 1));
-  const order = shape.map((_, i) => i).reverse().filter((axis) => !last.includes(axis));
-  for (const axis of [...order, ...last]) {
+  for (let axis = shape.length - 1; axis >= 0; axis--) {
     const step = chunk?.[axis] ?? 1;
     const others = sizes.reduce((product, size, i) => (i === axis ? product : product * size), 1);
     const room = Math.floor(budget / Math.max(1, others));
@@ -52,4 +51,40 @@ export function* slabs(shape: readonly number[], sizes: readonly number[], order
     }
     if (level < 0) return;
   }
+}
+
+export interface Run {
+  /** position in the whole */
+  node: number;
+  /** position in the box */
+  at: number;
+  length: number;
+}
+
+/** Visits the parts of a box that are contiguous in the whole of `shape` as well; both in C order. */
+export function eachRun({ start, count }: Slab, shape: readonly number[], visit: (node: number, at: number, length: number) => void): void {
+  let axis = shape.length;
+  let length = 1;
+  while (axis > 0) {
+    axis--;
+    length *= count[axis];
+    if (count[axis] !== shape[axis]) break;
+  }
+  const index = start.slice();
+  const total = count.reduce((product, size) => product * size, 1);
+  for (let at = 0; at < total; at += length) {
+    let node = 0;
+    for (let i = 0; i < shape.length; i++) node = node * shape[i] + index[i];
+    visit(node, at, length);
+    for (let i = axis - 1; i >= 0; i--) {
+      if (++index[i] < start[i] + count[i]) break;
+      index[i] = start[i];
+    }
+  }
+}
+
+export function contiguousRuns(box: Slab, shape: readonly number[]): Run[] {
+  const runs: Run[] = [];
+  eachRun(box, shape, (node, at, length) => runs.push({ node, at, length }));
+  return runs;
 }

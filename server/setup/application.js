@@ -29,7 +29,8 @@ export async function openApplicationDatabase(command) {
     const watch = setInterval(async () => {
       try {
         const { revived, moved } = await cluster.revive();
-        if (revived) warn('database', `had died and was started again; its words: ${cluster.home.folder}/log/postgres.log`);
+        if (revived)
+          warn('database', `had died and was started again; its words: ${cluster.home.folder}/log/postgres.log`);
         if (!moved) return;
         url = await ensureDatabase(cluster);
         restartAll();
@@ -57,7 +58,8 @@ export async function choosePort(host) {
     throw new SetupRefusal(`PORT is "${process.env.PORT}": give a whole number from 1 to 65535, or unset it for 8080.`);
   }
   const port = await nextFreePort(wanted, host);
-  if (port === null) throw new SetupRefusal(`No port from ${wanted} on can be opened on ${host}: give another PORT or HOST.`);
+  if (port === null)
+    throw new SetupRefusal(`No port from ${wanted} on can be opened on ${host}: give another PORT or HOST.`);
   if (port !== wanted) warn('port', `${wanted} is taken, using ${port}.`);
   return port;
 }

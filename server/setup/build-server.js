@@ -8,7 +8,11 @@ import { explain, SetupRefusal } from './refusal.js';
 
 /** Files that the compiler does not carry over but the running server may read; the set-up itself stays where it is. */
 function isCompanion(path) {
-  return !['.ts', '.tsx', '.md'].includes(extname(path)) && path !== join(checkout, 'server', 'setup') && !basename(path).startsWith('.');
+  return (
+    !['.ts', '.tsx', '.md'].includes(extname(path)) &&
+    path !== join(checkout, 'server', 'setup') &&
+    !basename(path).startsWith('.')
+  );
 }
 
 export async function buildServer() {
@@ -17,7 +21,8 @@ export async function buildServer() {
   mkdirSync(fresh, { recursive: true });
   const compiler = join(checkout, 'node_modules', 'typescript7', 'bin', 'tsc');
   const { code, output } = await run(process.execPath, [compiler, '-p', 'tsconfig.server.json', '--outDir', fresh]);
-  if (code !== 0) throw new SetupRefusal(`The server does not compile; mend what the compiler names and start again.\n${output}`);
+  if (code !== 0)
+    throw new SetupRefusal(`The server does not compile; mend what the compiler names and start again.\n${output}`);
   cpSync(join(checkout, 'server'), join(fresh, 'server'), { recursive: true, filter: isCompanion });
   // Import maps of package.json belong to the nearest one: in dist the contract is JavaScript.
   const description = { private: true, type: 'module', imports: { '#contract/*.ts': './server/contract/*.js' } };

@@ -11,10 +11,15 @@ import { hashOf, readStamp } from './source-stamp.js';
 
 async function buildWeb() {
   const vite = join(checkout, 'node_modules', 'vite', 'bin', 'vite.js');
-  const { code, output } = await run(process.execPath, [vite, 'build', '--outDir', join(dist, 'web'), '--emptyOutDir', '--logLevel', 'warn'], {
-    env: { ...process.env, NODE_ENV: 'production' },
-  });
-  if (code !== 0) throw new SetupRefusal(`The pages could not be built; mend what Vite names and start again.\n${output}`);
+  const { code, output } = await run(
+    process.execPath,
+    [vite, 'build', '--outDir', join(dist, 'web'), '--emptyOutDir', '--logLevel', 'warn'],
+    {
+      env: { ...process.env, NODE_ENV: 'production' },
+    },
+  );
+  if (code !== 0)
+    throw new SetupRefusal(`The pages could not be built; mend what Vite names and start again.\n${output}`);
 }
 
 const everywhere = ['package.json', 'package-lock.json', 'tsconfig.json'];

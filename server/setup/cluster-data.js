@@ -61,7 +61,9 @@ export async function ensureData(home, options) {
   if (!isWhole(data)) {
     const programs = findPrograms();
     if (programs === null) {
-      throw new SetupRefusal('PostgreSQL is not installed: run npm start once, or install Debian\'s package postgresql.');
+      throw new SetupRefusal(
+        "PostgreSQL is not installed: run npm start once, or install Debian's package postgresql.",
+      );
     }
     await initialise(home, programs, options);
     return programs;

@@ -50,7 +50,10 @@ export async function chooseHome(name) {
     try {
       chmodSync(folder, 0o700);
     } catch (cause) {
-      throw new SetupRefusal(`${folder} belongs to another user, probably root: start Pennyweight as that user again.`, { cause });
+      throw new SetupRefusal(
+        `${folder} belongs to another user, probably root: start Pennyweight as that user again.`,
+        { cause },
+      );
     }
   }
   const near = relative(checkout, folder);

@@ -67,7 +67,16 @@ async function withoutMainCluster(prefix, install) {
 
 async function aptGet(prefix, packages) {
   const call = (...args) => {
-    const words = [...prefix, 'env', 'DEBIAN_FRONTEND=noninteractive', 'apt-get', '-y', '-o', 'DPkg::Lock::Timeout=300', ...args];
+    const words = [
+      ...prefix,
+      'env',
+      'DEBIAN_FRONTEND=noninteractive',
+      'apt-get',
+      '-y',
+      '-o',
+      'DPkg::Lock::Timeout=300',
+      ...args,
+    ];
     return run(words[0], words.slice(1));
   };
   const install = () => call('install', '--no-install-recommends', ...packages);
@@ -97,7 +106,9 @@ async function install(names, command) {
   announce('system', `installing ${packages.join(', ')} for ${purposes}`);
   const { code, output } = await aptGet(prefix, packages);
   if (code !== 0 || (await missing(names)).length > 0) {
-    throw new SetupRefusal(`apt-get could not install ${packages.join(', ')}; its last words are below: ${advice}.\n${lastLines(output)}`);
+    throw new SetupRefusal(
+      `apt-get could not install ${packages.join(', ')}; its last words are below: ${advice}.\n${lastLines(output)}`,
+    );
   }
   announce('system', `installed in ${seconds(begun)}`);
 }

@@ -22,7 +22,8 @@ await holdSession(async ({ state, onClose }) => {
   const url = `http://${host}:${pagesPort}`;
   const env = () => settings({ databaseUrl: database.url(), host, port, url });
   await runStep('migrate', ['--import', 'tsx', 'server/db/migrate.ts'], env());
-  const seeded = env().PENNYWEIGHT_DEMO === '0' ? '' : await runStep('demo', ['--import', 'tsx', 'server/demo/seed.ts'], env());
+  const seeded =
+    env().PENNYWEIGHT_DEMO === '0' ? '' : await runStep('demo', ['--import', 'tsx', 'server/demo/seed.ts'], env());
 
   onClose(endAll);
   const vite = ['node_modules/vite/bin/vite.js', '--host', host, '--port', String(pagesPort), '--strictPort'];

@@ -45,7 +45,9 @@ export async function exclusively(purpose, work) {
   let lock = await claim(purpose);
   while (lock === null) {
     if (Date.now() > patience) {
-      throw new SetupRefusal(`Another process of this checkout has been busy with "${purpose}" for five minutes: end it and try again.`);
+      throw new SetupRefusal(
+        `Another process of this checkout has been busy with "${purpose}" for five minutes: end it and try again.`,
+      );
     }
     await wait(100);
     lock = await claim(purpose);

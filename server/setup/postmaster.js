@@ -12,7 +12,13 @@ import { writePrivately } from './secret.js';
 const largestLog = 10 * 1024 * 1024;
 
 // Only for tests: a crash may lose everything, which nobody will miss (PostgreSQL manual, "Non-Durable Settings").
-const nonDurable = ['fsync=off', 'synchronous_commit=off', 'full_page_writes=off', 'autovacuum=off', 'max_connections=150'];
+const nonDurable = [
+  'fsync=off',
+  'synchronous_commit=off',
+  'full_page_writes=off',
+  'autovacuum=off',
+  'max_connections=150',
+];
 
 /** Lines of postmaster.pid: 1 process, 2 data folder, 4 port, 8 state (src/include/utils/pidfile.h). */
 function readPidFile(data) {
@@ -44,7 +50,9 @@ export async function runningPort(home) {
     if (state.ready) return state.port;
     await wait(100);
   }
-  throw new SetupRefusal(`The PostgreSQL of ${home.folder} has been starting for a minute; see ${join(home.folder, 'log', 'postgres.log')}.`);
+  throw new SetupRefusal(
+    `The PostgreSQL of ${home.folder} has been starting for a minute; see ${join(home.folder, 'log', 'postgres.log')}.`,
+  );
 }
 
 /** PostgreSQL itself sees that the process of a stale file is dead, but not that its number now belongs to another. */
@@ -82,7 +90,12 @@ export async function startServer(home, programs, { durable }) {
   let output = '';
   for (let attempt = 0; attempt < 5; attempt += 1) {
     const port = await choosePort(home);
-    const settings = [`port=${port}`, 'listen_addresses=127.0.0.1', 'unix_socket_directories=', ...(durable ? [] : nonDurable)];
+    const settings = [
+      `port=${port}`,
+      'listen_addresses=127.0.0.1',
+      'unix_socket_directories=',
+      ...(durable ? [] : nonDurable),
+    ];
     const words = settings.map((setting) => `-c ${setting}`).join(' ');
     const args = ['-D', data, '-l', log, '-w', '-t', '120', '-s', '-o', words, 'start'];
     // Not interruptible: a server that nobody holds yet would be left behind.
@@ -95,7 +108,9 @@ export async function startServer(home, programs, { durable }) {
     // Only a port that another program took in this very moment is worth another try.
     if (await isFree(port)) break;
   }
-  throw new SetupRefusal(`PostgreSQL did not start; the cause is at the end of ${log}:\n${output}\n${lastLines(readFileSync(log, 'utf8'), 8)}`);
+  throw new SetupRefusal(
+    `PostgreSQL did not start; the cause is at the end of ${log}:\n${output}\n${lastLines(readFileSync(log, 'utf8'), 8)}`,
+  );
 }
 
 /** Ends the server and all connections to it; transactions that are under way are rolled back. */

@@ -18,13 +18,18 @@ export async function holdSession(work) {
     if (session === null) {
       const other = JSON.parse((await askHolder('session')) || '{}');
       const where = other.url ? `runs at ${other.url}` : 'is being started';
-      announce('already', `Pennyweight ${where} from ${checkout} (process ${other.pid}). End that one first to start anew.`);
+      announce(
+        'already',
+        `Pennyweight ${where} from ${checkout} (process ${other.pid}). End that one first to start anew.`,
+      );
       return;
     }
     closers.push(session.release);
     await work({ state, onClose: (close) => closers.push(close) });
   } catch (error) {
-    if (!interruption.aborted) {
+    if (interruption.aborted) {
+      announce('stopped', `by ${interruption.reason} before Pennyweight was running`);
+    } else {
       process.stderr.write(`\n${explain(error)}\n`);
       process.exitCode = 1;
     }

@@ -22,20 +22,21 @@ function remember() {
   writePrivately(register, JSON.stringify([...running.values()].map(({ identity }) => identity)));
 }
 
-/** To the process and all it started itself: each is the leader of its own group. */
+/** `pid` of a process, or minus that for it and all it started: each is the leader of its own group. */
 function signal(pid, name) {
   try {
-    process.kill(-pid, name);
+    process.kill(pid, name);
   } catch {
-    // The group is gone already.
+    // Gone already.
   }
 }
 
+/** First asks the leaders alone, which end their own children in their own order; then ends what is left by force. */
 async function end(identities) {
   for (const { pid } of identities) signal(pid, 'SIGTERM');
   const deadline = Date.now() + patience;
   while (identities.some(isAlive) && Date.now() < deadline) await wait(50);
-  for (const { pid } of identities.filter(isAlive)) signal(pid, 'SIGKILL');
+  for (const { pid } of identities) signal(-pid, 'SIGKILL');
 }
 
 /** Ends the processes of a previous run whose set-up was killed; told from later ones with the same number. */
@@ -60,7 +61,12 @@ function runOnce({ name, args, env, echo }) {
   return new Promise((resolve) => {
     const log = openLog(name);
     // detached: Ctrl+C in the terminal reaches only us, so each process gets one signal and its time to finish.
-    const child = spawn(process.execPath, args, { cwd: checkout, env: env(), stdio: ['ignore', 'pipe', 'pipe'], detached: true });
+    const child = spawn(process.execPath, args, {
+      cwd: checkout,
+      env: env(),
+      stdio: ['ignore', 'pipe', 'pipe'],
+      detached: true,
+    });
     let tail = '';
     const record = (text, terminal) => {
       log.write(text);
@@ -80,6 +86,8 @@ function runOnce({ name, args, env, echo }) {
       resolve({ reason, tail });
     };
     child.on('error', (error) => finish(error.message));
+    // What it leaves behind would hold its output open, and with it the end of its run.
+    child.on('exit', () => signal(-child.pid, 'SIGKILL'));
     child.on('close', (code, by) => finish(by === null ? `exit code ${code}` : by));
   });
 }
@@ -96,7 +104,10 @@ export async function keepRunning(task) {
     if (interruption.aborted) return;
     quickDeaths = Date.now() - begun < steadyAfter ? quickDeaths + 1 : 1;
     if (quickDeaths >= mostQuickDeaths) {
-      warn(task.name, `died ${quickDeaths} times in a row (${reason}); giving up. Its last words:\n${lastLines(tail.trimEnd())}`);
+      warn(
+        task.name,
+        `died ${quickDeaths} times in a row (${reason}); giving up. Its last words:\n${lastLines(tail.trimEnd())}`,
+      );
       interrupt('gave up');
       return;
     }

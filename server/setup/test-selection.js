@@ -3,7 +3,15 @@ import { existsSync, readdirSync } from 'node:fs';
 import { join, relative } from 'node:path';
 import { checkout } from './checkout.js';
 
-const optionsWithValue = new Set(['-t', '--testNamePattern', '--project', '--reporter', '--bail', '--retry', '--testTimeout']);
+const optionsWithValue = new Set([
+  '-t',
+  '--testNamePattern',
+  '--project',
+  '--reporter',
+  '--bail',
+  '--retry',
+  '--testTimeout',
+]);
 
 /** The words that are filters of file names and not options or their values. */
 export function fileFilters(args) {

@@ -18,7 +18,13 @@ const program = (...path) => join(checkout, 'node_modules', ...path);
 const checks = {
   types: [program('typescript7', 'bin', 'tsc'), '-p', 'tsconfig.json', '--noEmit'],
   lint: [program('eslint', 'bin', 'eslint.js'), '.', '--max-warnings', '0'],
-  rooms: [program('dependency-cruiser', 'bin', 'dependency-cruise.mjs'), '--config', '.dependency-cruiser.cjs', 'server', 'src'],
+  rooms: [
+    program('dependency-cruiser', 'bin', 'dependency-cruise.mjs'),
+    '--config',
+    '.dependency-cruiser.cjs',
+    'server',
+    'src',
+  ],
 };
 // A run that hangs must end and be counted as failed before the machine's own limit ends everything without a word.
 const deadline = 30 * 60_000;
@@ -62,7 +68,10 @@ async function testEverything() {
   listenForInterruption();
   prepareStorage();
   await ensureNodePackages();
-  await ensureDebianPackages({ required: ['postgres', 'openblas', 'chromium', 'fonts', 'python'], command: 'npm test' });
+  await ensureDebianPackages({
+    required: ['postgres', 'openblas', 'chromium', 'fonts', 'python'],
+    command: 'npm test',
+  });
   const selected = selectTests(args);
   const cluster = await openCluster('test-postgres', { durable: false });
   try {

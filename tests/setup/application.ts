@@ -41,7 +41,9 @@ export interface RunningApplication {
 }
 
 /** `demo` seeds the demo first; `environment` adds to the settings. */
-export async function startApplication(options: { demo?: boolean; environment?: Record<string, string> } = {}): Promise<RunningApplication> {
+export async function startApplication(
+  options: { demo?: boolean; environment?: Record<string, string> } = {},
+): Promise<RunningApplication> {
   const database = await createTestDatabase();
   const storage = await mkdtemp(join(tmpdir(), 'pennyweight-application-'));
   const port = await freePort();
@@ -78,7 +80,10 @@ export async function startApplication(options: { demo?: boolean; environment?: 
       if (response) return;
       await wait(100);
     }
-    throw new PennyweightError('unavailable', `The web server did not come up; its log ends with: ${(await log('web')).slice(-2000)}`);
+    throw new PennyweightError(
+      'unavailable',
+      `The web server did not come up; its log ends with: ${(await log('web')).slice(-2000)}`,
+    );
   }
 
   async function start(part: Part): Promise<void> {
@@ -106,14 +111,18 @@ export async function startApplication(options: { demo?: boolean; environment?: 
     await database.drop();
     await rm(storage, { recursive: true, force: true });
     if (logs.length > 0) {
-      throw new PennyweightError('internal', `The application did not end within 15 s of SIGTERM. ${logs.map((text) => text.slice(-1000)).join('\n')}`);
+      throw new PennyweightError(
+        'internal',
+        `The application did not end within 15 s of SIGTERM. ${logs.map((text) => text.slice(-1000)).join('\n')}`,
+      );
     }
   }
 
   try {
     if (options.demo) {
       const [code] = (await once(launch('seed', 'dist/server/demo/seed.js'), 'close')) as [number | null];
-      if (code !== 0) throw new PennyweightError('internal', `The demo could not be seeded: ${(await log('seed')).slice(-2000)}`);
+      if (code !== 0)
+        throw new PennyweightError('internal', `The demo could not be seeded: ${(await log('seed')).slice(-2000)}`);
     }
     await start('web');
     await start('worker');
@@ -121,5 +130,13 @@ export async function startApplication(options: { demo?: boolean; environment?: 
     await stop();
     throw error;
   }
-  return { url, databaseUrl: database.url, storage, start, kill: async (part) => void (await end(part, 'SIGKILL')), log, stop };
+  return {
+    url,
+    databaseUrl: database.url,
+    storage,
+    start,
+    kill: async (part) => void (await end(part, 'SIGKILL')),
+    log,
+    stop,
+  };
 }

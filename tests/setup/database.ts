@@ -58,7 +58,9 @@ export async function createTestDatabase(): Promise<TestDatabase> {
       const leaked = await leakedConnections(name);
       await administer(`drop database ${name} with (force)`);
       if (leaked.length > 0) {
-        const last = leaked.map((each) => `${each.application_name || 'unnamed'} (${each.state}): ${each.query.slice(0, 120)}`);
+        const last = leaked.map(
+          (each) => `${each.application_name || 'unnamed'} (${each.state}): ${each.query.slice(0, 120)}`,
+        );
         throw new PennyweightError(
           'internal',
           `${leaked.length} connections to the test database were still open: end the pool or the queue before drop(). ${last.join('; ')}`,

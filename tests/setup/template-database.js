@@ -25,7 +25,11 @@ export default async function setup(project) {
     await administer(cluster, `create database ${template} owner ${applicationRole};`);
     await migrate(urlOf(template));
     await administer(cluster, `alter database ${template} with is_template true allow_connections false;`);
-    project.provide('testDatabases', { template, adminUrl: cluster.url('postgres'), applicationUrl: urlOf('postgres') });
+    project.provide('testDatabases', {
+      template,
+      adminUrl: cluster.url('postgres'),
+      applicationUrl: urlOf('postgres'),
+    });
   } catch (error) {
     await cluster.close();
     throw error;

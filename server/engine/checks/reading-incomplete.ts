@@ -1,7 +1,7 @@
 /**
  * reading/incomplete: a role that is needed is not assigned, or what is assigned holds nothing: no field at all, a field
  * that the campaign requires, a field without (or with two) time axes in a record of several snapshots, an axis of a field
- * that the reading does not describe, a field of length 0.
+ * that the reading does not describe, a field of length 0. A field that does not fit at all is reading/shape-mismatch's.
  */
 import type { FieldReading } from '#contract/reading.ts';
 import type { Survey } from '../survey.ts';
@@ -42,7 +42,8 @@ export const readingIncomplete: Check = {
   judge({ survey, demands }) {
     if (!survey) return [];
     const { fields } = survey.reading;
-    const faults = fields.flatMap((field) => judgeField(survey, field));
+    const told = new Set(survey.mismatches.map((mismatch) => mismatch.path));
+    const faults = fields.filter((field) => !told.has(field.path)).flatMap((field) => judgeField(survey, field));
     if (fields.length === 0) {
       faults.unshift(judgement(null, `No array of the archive is assigned as a field (${survey.contents.arrays.length} found); say in the reading which arrays are fields.`, { count: survey.contents.arrays.length }));
     }

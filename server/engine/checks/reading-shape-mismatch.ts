@@ -1,6 +1,20 @@
-/** reading/shape-mismatch: the axes of a field do not fit the grid or the time vector, or fields differ in their snapshots. */
+/**
+ * reading/shape-mismatch: the axes of a field do not fit the grid or the time vector, or fields differ in their snapshots.
+ * An array that does not fit because it is damaged or lies outside of the archive, and a reading without any field, are
+ * told by file/unreadable, file/outside-link and reading/incomplete alone.
+ */
+import type { Survey } from '../survey.ts';
 import type { Check, Judgement } from './check.ts';
 import { snapshotCount } from './written-part.ts';
+
+function toldElsewhere({ contents, reading }: Survey, path: string): boolean {
+  if (path === '/') return reading.fields.length === 0;
+  return contents.damaged.some((damage) => damage.path === path) || contents.outsideLinks.some((link) => link.path === path);
+}
+
+function withAdvice(message: string): string {
+  return /correct|choose|upload|store /.test(message) ? message : message.replace(/\.?$/, '; correct the reading.');
+}
 
 export const readingShapeMismatch: Check = {
   id: 'reading/shape-mismatch',
@@ -10,7 +24,9 @@ export const readingShapeMismatch: Check = {
   thresholds: {},
   judge({ survey }) {
     if (!survey) return [];
-    const judgements: Judgement[] = survey.mismatches.map(({ path, expected, actual, message }) => ({ path, message, evidence: { expected, actual }, remedy: null }));
+    const judgements = survey.mismatches
+      .filter(({ path }) => !toldElsewhere(survey, path))
+      .map(({ path, expected, actual, message }): Judgement => ({ path, message: withAdvice(message), evidence: { expected, actual }, remedy: null }));
     const told = new Set(survey.mismatches.map((mismatch) => mismatch.path));
     const m = snapshotCount(survey);
     if (survey.stamps && survey.stamps.length !== m && survey.fields.length > 0 && !survey.mismatches.length) {

@@ -6,7 +6,7 @@
 import type { ArchiveReport } from '#contract/check-report.ts';
 import type { Finding } from '#contract/finding.ts';
 import type { FieldReading } from '#contract/reading.ts';
-import { describeSpacing } from '../quadrature/spacing.ts';
+import { axisEvenness } from '../checks/evenness.ts';
 import type { FieldSurvey, Survey, SurveyAxis } from '../survey.ts';
 
 export interface ReportedFile {
@@ -39,12 +39,10 @@ export function recordStatistics(field: FieldSurvey): Statistics {
   return { min: jsonNumber(min), max: jsonNumber(max), mean: count > 0 ? jsonNumber(sum / count) : null, norm: Array.from(field.norm, jsonNumber) };
 }
 
-/** Null when the coordinates are not known; also true for stamps that are uniform to their rounding. */
+/** Null when the coordinates are not known or not monotone; true also where only rounding makes them uneven. */
 export function isUniform(axis: SurveyAxis): boolean | null {
-  const nodes = axis.nodes ?? axis.edges;
-  if (!nodes || !nodes.every(Number.isFinite)) return null;
-  const ascending = nodes.length > 1 && nodes[0] > nodes[nodes.length - 1] ? Float64Array.from(nodes, (value) => -value).slice() : nodes;
-  return ascending.every((value, i) => i === 0 || value > ascending[i - 1]) ? describeSpacing(ascending, axis.dtype).kind !== 'uneven' : false;
+  const evenness = axisEvenness(axis);
+  return evenness && evenness.verdict !== 'uneven';
 }
 
 function reportField(survey: Survey, field: FieldReading): ReportedReading['fields'][number] {

@@ -7,7 +7,7 @@ import type { FieldSurvey } from '../../engine/survey.ts';
 import { convertInto } from '../element.ts';
 import type { FieldSource } from '../field-source.ts';
 import { nodeOf } from '../reading-axes.ts';
-import { slabs, type Slab } from '../slab-plan.ts';
+import { contiguousRuns, slabs, type Slab } from '../slab-plan.ts';
 import { sizeOf } from '../stored-array.ts';
 import { FieldTally, type Values } from './field-tally.ts';
 import { fillCandidates } from './fill-candidates.ts';
@@ -51,7 +51,7 @@ export async function surveyField(source: FieldSource, unit: string | null, prog
   async function addPiece(first: number, many: number, tile: Slab): Promise<void> {
     const now = valuesOf(source.read(first, many, tile));
     const tileNodes = sizeOf(tile.count);
-    const runs = runsOf(tile, storedSpace, held);
+    const runs = contiguousRuns(tile, storedSpace).map((run) => ({ ...run, heldAt: held ? run.node : run.at }));
     for (let t = 0; t < many; t++) {
       const j = first + t;
       for (const { node, at, length, heldAt } of runs) {
@@ -99,38 +99,6 @@ function keep(into: Values, intoAt: number, from: Values, at: number, length: nu
   into.values.set(from.values.subarray(at, at + length), intoAt);
   const perValue = into.single ? 1 : 2;
   if (into.words.buffer !== into.values.buffer) into.words.set(from.words.subarray(perValue * at, perValue * (at + length)), perValue * intoAt);
-}
-
-interface Run {
-  /** node of the whole snapshot, in storage order */
-  node: number;
-  /** position in the tile, and in what is held of the snapshot before */
-  at: number;
-  heldAt: number;
-  length: number;
-}
-
-/** Parts of a tile that are contiguous in the whole snapshot as well. */
-function runsOf({ start, count }: Slab, shape: number[], held: boolean): Run[] {
-  let axis = shape.length;
-  let length = 1;
-  while (axis > 0) {
-    axis--;
-    length *= count[axis];
-    if (count[axis] !== shape[axis]) break;
-  }
-  const runs: Run[] = [];
-  const index = start.slice();
-  const total = sizeOf(count);
-  for (let at = 0; at < total; at += length) {
-    const node = index.reduce((sum, position, i) => sum * shape[i] + position, 0);
-    runs.push({ node, at, heldAt: held ? node : at, length });
-    for (let i = axis - 1; i >= 0; i--) {
-      if (++index[i] < start[i] + count[i]) break;
-      index[i] = start[i];
-    }
-  }
-  return runs;
 }
 
 function finish(source: FieldSource, unit: string | null, tally: FieldTally, changedNodes: number): FieldSurvey {

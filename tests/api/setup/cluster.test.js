@@ -121,7 +121,12 @@ describe('a cluster of this checkout', () => {
       const url = await ensureDatabase(cluster, 'probe');
       expect(await ensureDatabase(cluster, 'probe')).toBe(url);
       expect(await whyUnreachable(url)).toBeNull();
-      expect(await administer(cluster, `select rolsuper or rolcreatedb or rolcreaterole from pg_roles where rolname = 'pennyweight';`)).toBe('f');
+      expect(
+        await administer(
+          cluster,
+          `select rolsuper or rolcreatedb or rolcreaterole from pg_roles where rolname = 'pennyweight';`,
+        ),
+      ).toBe('f');
       const wrong = new URL(url);
       wrong.password = 'wrong';
       expect(await whyUnreachable(wrong.href)).toContain('password authentication failed');

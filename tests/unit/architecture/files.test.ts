@@ -12,7 +12,9 @@ describe('source files', () => {
   });
 
   it('are named in words of the trade', () => {
-    const named = files.filter(({ path }) => [basename(path), ...dirname(path).split('/')].some((word) => forbiddenName.test(word)));
+    const named = files.filter(({ path }) =>
+      [basename(path), ...dirname(path).split('/')].some((word) => forbiddenName.test(word)),
+    );
     expect(named.map(({ path }) => path)).toEqual([]);
   });
 

@@ -73,14 +73,16 @@ describe('the checker of the walls', () => {
   afterAll(() => rmSync(folder, { recursive: true }));
 
   it('stops each trespass', async () => {
-    for (const file of ['.dependency-cruiser.cjs', 'package.json', 'tsconfig.json']) cpSync(join(checkout, file), join(folder, file));
+    for (const file of ['.dependency-cruiser.cjs', 'package.json', 'tsconfig.json'])
+      cpSync(join(checkout, file), join(folder, file));
     symlinkSync(join(checkout, 'node_modules'), join(folder, 'node_modules'));
     const write = (path: string, text: string) => {
       mkdirSync(dirname(join(folder, path)), { recursive: true });
       writeFileSync(join(folder, path), text);
     };
     const isFile = (to: string) => /\.tsx?$/.test(to);
-    for (const [, , to] of trespasses.filter((each) => isFile(each[2]) && !each[2].includes('nothing'))) write(to, 'export const value = 1;\n');
+    for (const [, , to] of trespasses.filter((each) => isFile(each[2]) && !each[2].includes('nothing')))
+      write(to, 'export const value = 1;\n');
     for (const [, from, to] of trespasses) {
       const up = '../'.repeat(from.split('/').length - 1);
       write(from, `import * as other from '${isFile(to) ? up + to : to}';\nexport const value = other;\n`);

@@ -31,7 +31,9 @@ describe('a lock', () => {
       await work();
       throw new RangeError('of the work');
     };
-    const results = await Promise.allSettled([work, failing, work, work].map((each) => exclusively(`${purpose}-many`, each)));
+    const results = await Promise.allSettled(
+      [work, failing, work, work].map((each) => exclusively(`${purpose}-many`, each)),
+    );
     expect(results.map(({ status }) => status)).toEqual(['fulfilled', 'rejected', 'fulfilled', 'fulfilled']);
     expect(most).toBe(1);
   });

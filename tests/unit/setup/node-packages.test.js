@@ -9,12 +9,24 @@ const locked = {
 
 describe('installed packages', () => {
   it.each([
-    ['all there', { 'node_modules/a': { version: '1.2.3' }, 'node_modules/other-platform': { version: '4.0.0' } }, true],
+    [
+      'all there',
+      { 'node_modules/a': { version: '1.2.3' }, 'node_modules/other-platform': { version: '4.0.0' } },
+      true,
+    ],
     ['but for an optional one', { 'node_modules/a': { version: '1.2.3' } }, true],
     ['none', {}, false],
     ['another version', { 'node_modules/a': { version: '1.2.4' } }, false],
-    ['another version of an optional one', { 'node_modules/a': { version: '1.2.3' }, 'node_modules/other-platform': { version: '3.9.0' } }, false],
-    ['one that is no longer wanted', { 'node_modules/a': { version: '1.2.3' }, 'node_modules/gone': { version: '1.0.0' } }, false],
+    [
+      'another version of an optional one',
+      { 'node_modules/a': { version: '1.2.3' }, 'node_modules/other-platform': { version: '3.9.0' } },
+      false,
+    ],
+    [
+      'one that is no longer wanted',
+      { 'node_modules/a': { version: '1.2.3' }, 'node_modules/gone': { version: '1.0.0' } },
+      false,
+    ],
     ['never or half installed', null, false],
   ])('%s', (_, installed, current) => {
     expect(packagesFit(locked, installed)).toBe(current);

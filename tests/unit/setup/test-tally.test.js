@@ -61,7 +61,7 @@ describe('the selection', () => {
     expect(selectTests(['./tests/unit/setup'])).toEqual({ checks: false, browser: false });
   });
 
-  it('does not take an option\'s value for a filter', () => {
+  it("does not take an option's value for a filter", () => {
     expect(fileFilters(['-t', 'a name', 'tests/unit', '--reporter=dot'])).toEqual(['tests/unit']);
   });
 });

@@ -15,7 +15,15 @@ describe('reading/shape-mismatch', () => {
     expect(judge(readingShapeMismatch, makeSubject(plan)).map((found) => found.path)).toEqual([path]);
   });
 
+  it('adds what to do to a message that does not say so', () => {
+    const told = judge(readingShapeMismatch, makeSubject({ mismatches: [{ ...mismatch, message: '/u has shape (10, 4).' }] }));
+    expect(told[0].message).toBe('/u has shape (10, 4); correct the reading.');
+  });
+
   it.each<[string, RecordPlan]>([
+    ['a field that is damaged', { mismatches: [mismatch], contents: { damaged: [{ path: '/u', reason: 'cut off' }] } }],
+    ['a field whose data lie outside', { mismatches: [mismatch], contents: { outsideLinks: [{ path: '/u', kind: 'external-storage', target: 'raw.bin' }] } }],
+    ['a reading without a field', { fields: [], mismatches: [{ ...mismatch, path: '/' }] }],
     ['shapes that fit', { stamps: uniform(5) }],
     ['one snapshot and one stamp', { stamps: [0], fields: [{ values: movingValues(1) }] }],
     ['axes of length 0 with as many coordinates', { fields: [{ values: [] }], axes: [{ name: 'x', nodes: [] }] }],

@@ -1,0 +1,152 @@
+/**
+ * Chosen snapshots of chosen fields in double precision: [snapshot][node], fields stacked in the order asked. They are
+ * read window by window; a window holds as many snapshots as make reading worth while where all times of a node lie
+ * together, and ends with a chunk where chunks hold several snapshots.
+ */
+import { PennyweightError } from '#contract/error.ts';
+import type { Reading } from '#contract/reading.ts';
+import type { Archive } from './archive.ts';
+import { convertInto } from './element.ts';
+import { fieldSource, type FieldSource } from './field-source.ts';
+import type { Limits } from './limits.ts';
+import { nodeOrder } from './reading-axes.ts';
+import { contiguousRuns, slabs, type Slab } from './slab-plan.ts';
+import { sizeOf } from './stored-array.ts';
+
+export interface SnapshotPlan {
+  /** values of one snapshot: nodes of all asked fields */
+  nodes: number;
+  /** snapshots of one block that is handed out */
+  blockLength: number;
+  /** first position in the indices of each window, and the end */
+  windows: number[];
+  indices: ArrayLike<number>;
+  columns: { source: FieldSource; from: number; order: Uint32Array | null }[];
+}
+
+const blockBytes = 32 * 2 ** 20;
+const windowBytes = 192 * 2 ** 20;
+const pieceBytes = 16 * 2 ** 20;
+
+export function planSnapshots(archive: Archive, reading: Reading, names: string[], indices: ArrayLike<number>, limits: Limits): SnapshotPlan {
+  const columns: SnapshotPlan['columns'] = [];
+  let nodes = 0;
+  for (const name of names) {
+    const field = reading.fields.find((one) => one.name === name);
+    if (!field) {
+      throw new PennyweightError('not-found', `the reading has no field ${name}; it has ${reading.fields.map((one) => one.name).join(', ') || 'none'}.`, { field: name });
+    }
+    const source = fieldSource(archive, field, limits);
+    if (columns.length > 0 && source.snapshots !== columns[0].source.snapshots) {
+      throw new PennyweightError(
+        'reading-mismatch',
+        `${field.path} has ${source.snapshots} snapshots, and ${columns[0].source.field.path} has ${columns[0].source.snapshots}; correct the reading.`,
+        { path: field.path, expected: columns[0].source.snapshots, actual: source.snapshots },
+      );
+    }
+    columns.push({ source, from: nodes, order: null });
+    nodes += source.axes.nodes;
+  }
+  if (columns.length === 0) throw new PennyweightError('invalid-input', 'choose at least one field to read.');
+  const { snapshots } = columns[0].source;
+  for (let p = 0; p < indices.length; p++) {
+    if (!Number.isInteger(indices[p]) || indices[p] < 0 || indices[p] >= snapshots) {
+      throw new PennyweightError('range-invalid', `there is no snapshot ${indices[p]}: the record has ${snapshots}, counted from 0.`, { index: indices[p], snapshots });
+    }
+  }
+  const snapshotBytes = nodes * 8;
+  if (snapshotBytes > limits.snapshotBytes) {
+    throw new PennyweightError('limit-exceeded', `one snapshot of ${names.join(', ')} has ${snapshotBytes} bytes in double precision, and ${limits.snapshotBytes} are the most; choose fewer fields.`, {
+      expected: limits.snapshotBytes,
+      actual: snapshotBytes,
+    });
+  }
+  for (const column of columns) column.order = nodeOrder(column.source.axes);
+  const fitting = (bytes: number) => Math.max(1, Math.floor(bytes / Math.max(1, snapshotBytes)));
+  const blockLength = fitting(blockBytes);
+  const timeStep = Math.max(...columns.map(({ source }) => source.timeStep));
+  const together = columns.some(({ source }) => source.timesTogether);
+  const most = together ? fitting(windowBytes) : Math.min(fitting(windowBytes), Math.max(1, Math.floor(blockLength / timeStep)) * timeStep);
+  return { nodes, blockLength, windows: windowsOf(indices, most, timeStep), indices, columns };
+}
+
+/** Windows of at most `most` snapshots; each ends where the next chunk begins, when one begins inside. */
+function windowsOf(indices: ArrayLike<number>, most: number, timeStep: number): number[] {
+  const windows = [0];
+  while (windows[windows.length - 1] < indices.length) {
+    const from = windows[windows.length - 1];
+    let to = Math.min(indices.length, from + most);
+    if (timeStep > 1 && to < indices.length) {
+      let border = to;
+      while (border > from && Math.floor(indices[border] / timeStep) === Math.floor(indices[border - 1] / timeStep)) border--;
+      if (border > from) to = border;
+    }
+    windows.push(to);
+  }
+  return windows;
+}
+
+/** Values of window `w`: count x nodes. */
+export function readWindow(plan: SnapshotPlan, w: number): { from: number; count: number; values: Float64Array } {
+  const from = plan.windows[w];
+  const count = plan.windows[w + 1] - from;
+  const values = new Float64Array(count * plan.nodes);
+  const places = new Map<number, number[]>();
+  for (let p = 0; p < count; p++) {
+    const time = plan.indices[from + p];
+    const known = places.get(time);
+    if (known) known.push(p);
+    else places.set(time, [p]);
+  }
+  const times = [...places.keys()].sort((a, b) => a - b);
+  for (const column of plan.columns) {
+    const { source } = column;
+    const sizes = source.pieceSizes(pieceBytes / source.itemBytes);
+    for (const [first, last] of stretches(times, source.timeStep)) {
+      const long = Math.max(source.timeStep, sizes.times);
+      for (let at = first; at <= last; ) {
+        const end = Math.min(last + 1, (Math.floor(at / long) + 1) * long);
+        for (const tile of slabs(source.axes.storedSpace, sizes.space, source.axes.storedSpace.map((_, i) => i))) {
+          scatter(plan, column, source.read(at, end - at, tile), at, end - at, tile, places, values);
+        }
+        at = end;
+      }
+    }
+  }
+  return { from, count, values };
+}
+
+/** Ascending times as stretches that are read in one go: neighbours, and those in one chunk. */
+function stretches(times: number[], timeStep: number): [number, number][] {
+  const found: [number, number][] = [];
+  for (const time of times) {
+    const latest = found[found.length - 1];
+    if (latest && (time - latest[1] === 1 || Math.floor(time / timeStep) === Math.floor(latest[1] / timeStep))) latest[1] = time;
+    else found.push([time, time]);
+  }
+  return found;
+}
+
+function scatter(
+  plan: SnapshotPlan, { source, from, order }: SnapshotPlan['columns'][number], bytes: Uint8Array, first: number, times: number, tile: Slab,
+  places: Map<number, number[]>, values: Float64Array,
+): void {
+  const { itemBytes, dtype, axes } = source;
+  const tileNodes = sizeOf(tile.count);
+  const runs = contiguousRuns(tile, axes.storedSpace);
+  const ordered = order && new Float64Array(tileNodes);
+  for (let t = 0; t < times; t++) {
+    for (const p of places.get(first + t) ?? []) {
+      const row = p * plan.nodes + from;
+      const start = t * tileNodes;
+      if (order && ordered) {
+        convertInto(ordered, 0, bytes.subarray(start * itemBytes, (start + tileNodes) * itemBytes), dtype, tileNodes);
+        for (const { node, at, length } of runs) for (let i = 0; i < length; i++) values[row + order[node + i]] = ordered[at + i];
+      } else {
+        for (const { node, at, length } of runs) {
+          convertInto(values, row + node, bytes.subarray((start + at) * itemBytes, (start + at + length) * itemBytes), dtype, length);
+        }
+      }
+    }
+  }
+}
