@@ -14,31 +14,6 @@ CREATE TABLE "account" (
 	"updated_at" timestamp with time zone DEFAULT now() NOT NULL
 );
 --> statement-breakpoint
-CREATE TABLE "apikey" (
-	"id" text PRIMARY KEY NOT NULL,
-	"config_id" text DEFAULT 'default' NOT NULL,
-	"name" text,
-	"start" text,
-	"reference_id" text NOT NULL,
-	"prefix" text,
-	"key" text NOT NULL,
-	"refill_interval" integer,
-	"refill_amount" integer,
-	"last_refill_at" timestamp with time zone,
-	"enabled" boolean,
-	"rate_limit_enabled" boolean,
-	"rate_limit_time_window" integer,
-	"rate_limit_max" integer,
-	"request_count" integer,
-	"remaining" integer,
-	"last_request" timestamp with time zone,
-	"expires_at" timestamp with time zone,
-	"created_at" timestamp with time zone DEFAULT now() NOT NULL,
-	"updated_at" timestamp with time zone DEFAULT now() NOT NULL,
-	"permissions" text,
-	"metadata" text
-);
---> statement-breakpoint
 CREATE TABLE "rate_limit" (
 	"id" text PRIMARY KEY NOT NULL,
 	"key" text NOT NULL,
@@ -57,6 +32,21 @@ CREATE TABLE "session" (
 	"user_agent" text,
 	"user_id" text NOT NULL,
 	CONSTRAINT "session_token_unique" UNIQUE("token")
+);
+--> statement-breakpoint
+CREATE TABLE "token" (
+	"id" uuid PRIMARY KEY DEFAULT gen_random_uuid() NOT NULL,
+	"user_id" text NOT NULL,
+	"name" text NOT NULL,
+	"start" text NOT NULL,
+	"hash" text NOT NULL,
+	"scopes" jsonb NOT NULL,
+	"campaign_id" uuid,
+	"created_at" timestamp with time zone DEFAULT now() NOT NULL,
+	"expires_at" timestamp with time zone NOT NULL,
+	"last_used_at" timestamp with time zone,
+	"revoked_at" timestamp with time zone,
+	CONSTRAINT "token_hash_unique" UNIQUE("hash")
 );
 --> statement-breakpoint
 CREATE TABLE "user" (
@@ -356,6 +346,7 @@ CREATE TABLE "job" (
 --> statement-breakpoint
 ALTER TABLE "account" ADD CONSTRAINT "account_user_id_user_id_fk" FOREIGN KEY ("user_id") REFERENCES "public"."user"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "session" ADD CONSTRAINT "session_user_id_user_id_fk" FOREIGN KEY ("user_id") REFERENCES "public"."user"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "token" ADD CONSTRAINT "token_user_id_user_id_fk" FOREIGN KEY ("user_id") REFERENCES "public"."user"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "campaign" ADD CONSTRAINT "campaign_created_by_user_id_fk" FOREIGN KEY ("created_by") REFERENCES "public"."user"("id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "invitation" ADD CONSTRAINT "invitation_campaign_id_campaign_id_fk" FOREIGN KEY ("campaign_id") REFERENCES "public"."campaign"("id") ON DELETE cascade ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "invitation" ADD CONSTRAINT "invitation_invited_by_user_id_fk" FOREIGN KEY ("invited_by") REFERENCES "public"."user"("id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
@@ -395,9 +386,8 @@ ALTER TABLE "release" ADD CONSTRAINT "release_withdrawn_by_user_id_fk" FOREIGN K
 ALTER TABLE "job" ADD CONSTRAINT "job_campaign_id_campaign_id_fk" FOREIGN KEY ("campaign_id") REFERENCES "public"."campaign"("id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "job" ADD CONSTRAINT "job_created_by_user_id_fk" FOREIGN KEY ("created_by") REFERENCES "public"."user"("id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 CREATE INDEX "account_user" ON "account" USING btree ("user_id");--> statement-breakpoint
-CREATE INDEX "apikey_key" ON "apikey" USING btree ("key");--> statement-breakpoint
-CREATE INDEX "apikey_reference" ON "apikey" USING btree ("reference_id");--> statement-breakpoint
 CREATE INDEX "session_user" ON "session" USING btree ("user_id");--> statement-breakpoint
+CREATE INDEX "token_user" ON "token" USING btree ("user_id");--> statement-breakpoint
 CREATE INDEX "verification_identifier" ON "verification" USING btree ("identifier");--> statement-breakpoint
 CREATE UNIQUE INDEX "role_assignment_one" ON "role_assignment" USING btree ("user_id",coalesce("campaign_id", '00000000-0000-0000-0000-000000000000'::uuid),"role");--> statement-breakpoint
 CREATE INDEX "role_assignment_campaign" ON "role_assignment" USING btree ("campaign_id");--> statement-breakpoint

@@ -7,7 +7,9 @@ import type { Config } from '../config.ts';
 import type { Database } from '../db/database.ts';
 import type { Queue } from '../jobs/queue.ts';
 import type { Mailer } from '../mail/mailer.ts';
+import type { DemoInbox } from '../mail/demo-inbox.ts';
 import type { ObjectStorage } from '../storage/object-storage.ts';
+import type { ArchiveReader } from './archive-reader.ts';
 
 export interface App {
   config: Config;
@@ -15,6 +17,10 @@ export interface App {
   storage: ObjectStorage;
   queue: Queue;
   mailer: Mailer;
+  /** opens archives in the isolated reading process; wired by main.ts and worker.ts */
+  reader: ArchiveReader;
+  /** the demo's inbox; null outside demo mode and tests */
+  inbox: DemoInbox | null;
   log: Logger;
 }
 

@@ -1,5 +1,6 @@
-/** Tables of better-auth, by its getAuthTables() (user, session, account, verification, apikey, rateLimit). Export names are the library's. */
-import { bigint, boolean, index, integer, pgTable, text, timestamp } from 'drizzle-orm/pg-core';
+/** Tables of better-auth, by its getAuthTables() (user, session, account, verification, rateLimit), and personal tokens. Export names of the former are the library's. */
+import { bigint, boolean, index, integer, jsonb, pgTable, text, timestamp, uuid } from 'drizzle-orm/pg-core';
+import type { TokenScope } from '#contract/access.ts';
 
 const at = (column: string) => timestamp(column, { withTimezone: true });
 
@@ -51,30 +52,21 @@ export const verification = pgTable('verification', {
   updatedAt: at('updated_at').notNull().defaultNow(),
 }, (table) => [index('verification_identifier').on(table.identifier)]);
 
-export const apikey = pgTable('apikey', {
-  id: text('id').primaryKey(),
-  configId: text('config_id').notNull().default('default'),
-  name: text('name'),
-  start: text('start'),
-  referenceId: text('reference_id').notNull(),
-  prefix: text('prefix'),
-  key: text('key').notNull(),
-  refillInterval: integer('refill_interval'),
-  refillAmount: integer('refill_amount'),
-  lastRefillAt: at('last_refill_at'),
-  enabled: boolean('enabled'),
-  rateLimitEnabled: boolean('rate_limit_enabled'),
-  rateLimitTimeWindow: integer('rate_limit_time_window'),
-  rateLimitMax: integer('rate_limit_max'),
-  requestCount: integer('request_count'),
-  remaining: integer('remaining'),
-  lastRequest: at('last_request'),
-  expiresAt: at('expires_at'),
+/** Personal tokens (ours, not the library's: made and revoked in one transaction with their audit row). Only the SHA-256 is kept. */
+export const token = pgTable('token', {
+  id: uuid('id').primaryKey().defaultRandom(),
+  userId: text('user_id').notNull().references(() => user.id, { onDelete: 'cascade' }),
+  name: text('name').notNull(),
+  start: text('start').notNull(),
+  hash: text('hash').notNull().unique(),
+  scopes: jsonb('scopes').$type<TokenScope[]>().notNull(),
+  /** null: every campaign of its owner */
+  campaignId: uuid('campaign_id'),
   createdAt: at('created_at').notNull().defaultNow(),
-  updatedAt: at('updated_at').notNull().defaultNow(),
-  permissions: text('permissions'),
-  metadata: text('metadata'),
-}, (table) => [index('apikey_key').on(table.key), index('apikey_reference').on(table.referenceId)]);
+  expiresAt: at('expires_at').notNull(),
+  lastUsedAt: at('last_used_at'),
+  revokedAt: at('revoked_at'),
+}, (table) => [index('token_user').on(table.userId)]);
 
 export const rateLimit = pgTable('rate_limit', {
   id: text('id').primaryKey(),

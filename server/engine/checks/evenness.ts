@@ -1,8 +1,9 @@
 /**
- * Even, even to rounding, or uneven: quadrature/spacing.ts, and one case more. Stamps that a solver added up in single
- * precision, t += dt, drift away from the even grid by many units in the last place while each interval is within one of
- * the usual: explained by the type as well, as long as the unit stays below a quarter of the interval.
- * (Bound: one rounding to nearest of t + dt is half a unit of the larger t, two intervals differ by at most one unit.)
+ * Even, even to rounding, or uneven: quadrature/spacing.ts, and two cases more.
+ *  - Stamps that a solver added up in single precision, t += dt, drift away from the even grid by many units in the last
+ *    place while each interval is within one of the usual. (Bound: one rounding to nearest of t + dt is half a unit of the
+ *    larger t, so two intervals differ by at most one unit.) The unit must stay below a quarter of the interval.
+ *  - Stamps printed with 10 to 15 significant digits, which leave more decimals to small stamps than to large ones.
  */
 import type { ElementType } from '#contract/reading.ts';
 import { describeSpacing, type Spacing } from '../quadrature/spacing.ts';
@@ -25,7 +26,15 @@ export function evennessOf(stamps: Float64Array, dtype: ElementType | null): Eve
   const single = dtype === 'float32' || stamps.every((stamp) => Math.fround(stamp) === stamp);
   const drift = Math.max(spacing.hMax - spacing.hMedian, spacing.hMedian - spacing.hMin);
   if (single && unit <= spacing.hMedian / 4 && drift <= unit) return { spacing, verdict: 'rounded', explainedBy: 'additions in float32' };
+  const digits = manyDigits(stamps);
+  if (digits !== null && spacing.deviation <= 1.01 * 10 ** (Math.floor(Math.log10(largest)) - digits + 1)) return { spacing, verdict: 'rounded', explainedBy: `${digits} digits` };
   return { spacing, verdict: 'uneven', explainedBy: null };
+}
+
+/** Fewest significant digits, 10 to 15, that write every stamp; null when none do. 15 always survive a double (DBL_DIG). */
+function manyDigits(stamps: Float64Array): number | null {
+  for (let digits = 10; digits <= 15; digits++) if (stamps.every((stamp) => Number(stamp.toPrecision(digits)) === stamp)) return digits;
+  return null;
 }
 
 /** Evenness of an axis of either direction by its coordinates, else its cell edges; null when unknown or not strictly monotone. */

@@ -4,31 +4,12 @@
  *  - Suspected: the record ends in snapshots that hold the fill value only; when that counts and when not (a first snapshot
  *    of zeros, a field that is zero throughout, fades to zero or is switched off while others go on) stands in written-part.ts.
  */
-import type { ArrayInfo, Role } from '#contract/reading.ts';
 import type { Survey } from '../survey.ts';
 import type { Check, CheckSubject, Judgement } from './check.ts';
 import { evidenceOf } from './evidence.ts';
 import { counted, plainNumber, snapshotText } from './quantity.ts';
 import { dropSnapshots } from './remedy.ts';
-import { snapshotCount, unwrittenTail } from './written-part.ts';
-
-const usedRoles: Role[] = ['time', 'coordinate', 'cell-edges', 'weight', 'field', 'component'];
-
-/** Arrays that the reading uses and that hold fewer elements than their shape. */
-function shortArrays(survey: Survey): { path: string; held: number; needed: number }[] {
-  const short = new Map<string, { path: string; held: number; needed: number }>();
-  const note = (path: string, held: number | null, needed: number) => {
-    if (held !== null && held < needed && !short.has(path)) short.set(path, { path, held, needed });
-  };
-  for (const field of survey.fields) note(field.path, field.allocated, field.snapshots * field.nodes);
-  const roles = new Map(survey.reading.roles.map(({ path, role }) => [path, role]));
-  const elements = (array: ArrayInfo) => array.shape.reduce((product, length) => product * length, 1);
-  for (const array of survey.contents.arrays) {
-    const role = roles.get(array.path);
-    if (role && usedRoles.includes(role)) note(array.path, array.allocated, elements(array));
-  }
-  return [...short.values()];
-}
+import { shortArrays, snapshotCount, unwrittenTail } from './written-part.ts';
 
 function tailIndices(survey: Survey, tail: number): number[] {
   const m = snapshotCount(survey);

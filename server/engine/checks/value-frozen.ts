@@ -3,6 +3,7 @@
  *  - a field that never changes in time (value/constant-field, once),
  *  - a field that is updated in a fixed rhythm, every k-th snapshot over the whole record, while another field changes at
  *    every snapshot: a slowly computed quantity stored with the others,
+ *  - snapshots without a finite value (value/non-finite),
  *  - snapshots at the end that were never written (file/unwritten-data).
  * A run that comes to rest bit for bit does fire: the copies carry nothing, and dropping them leaves the last one.
  */
@@ -13,10 +14,12 @@ import { counted, snapshotText } from './quantity.ts';
 import { orderRecord } from './remedy.ts';
 import { writtenCount } from './written-part.ts';
 
-/** Indices j with the content of j - 1, below `m`. */
+/** Indices j with the content of j - 1, below `m`; where there is a finite value. */
 export function copies(field: FieldSurvey, m: number): number[] {
   const found: number[] = [];
-  for (let j = 1; j < Math.min(m, field.hash.length); j++) if (field.hash[j] === field.hash[j - 1]) found.push(j);
+  for (let j = 1; j < Math.min(m, field.hash.length); j++) {
+    if (field.hash[j] === field.hash[j - 1] && field.nonFinite[j] < field.nodes) found.push(j);
+  }
   return found;
 }
 

@@ -1,7 +1,8 @@
 /**
  * value/repeated: a snapshot identical bit for bit to an earlier one that is not its neighbour. Only a caution: a truly
  * periodic or symmetric record repeats itself. Not counted are copies of the snapshot before (value/frozen), repeats at the
- * same time (time/duplicate, time/restart-overlap), fields constant in time, and the unwritten end.
+ * same time (time/duplicate, time/restart-overlap), snapshots without a finite value, fields constant in time, and the
+ * unwritten end.
  */
 import type { FieldSurvey } from '../survey.ts';
 import type { Check, CheckSubject, Judgement } from './check.ts';
@@ -15,6 +16,7 @@ function repeats(field: FieldSurvey, m: number, stamps: Float64Array | null): [n
   const first = new Map<string, number>();
   const found: [number, number][] = [];
   for (let j = 0; j < Math.min(m, field.hash.length); j++) {
+    if (field.nonFinite[j] === field.nodes) continue;
     const earlier = first.get(field.hash[j]);
     if (earlier === undefined) first.set(field.hash[j], j);
     else if (field.hash[j] !== field.hash[j - 1] && !(stamps && stamps[j] === stamps[earlier])) found.push([earlier, j]);

@@ -11,6 +11,7 @@
  * field that is switched off while others go on, a uniform end state of any other value, a run that diverged to NaN.
  * Source of the defaults: HDF5 reference manual, H5Pset_fill_value; netcdf.h (NC_FILL_*). Method: common practice, no source.
  */
+import type { ArrayInfo, Role } from '#contract/reading.ts';
 import type { FieldSurvey, Survey } from '../survey.ts';
 import type { CheckSubject } from './check.ts';
 
@@ -57,4 +58,28 @@ export function writtenStamps(subject: CheckSubject): Float64Array | null {
   const stamps = subject.survey?.stamps ?? null;
   if (!stamps || !subject.unwritten) return stamps;
   return stamps.subarray(0, Math.max(0, stamps.length - subject.unwritten));
+}
+
+const usedRoles: Role[] = ['time', 'coordinate', 'cell-edges', 'weight', 'field', 'component'];
+
+export interface ShortArray {
+  path: string;
+  held: number;
+  needed: number;
+}
+
+/** Arrays that the reading uses and that hold fewer elements than their shape. */
+export function shortArrays(survey: Survey): ShortArray[] {
+  const short = new Map<string, ShortArray>();
+  const note = (path: string, held: number | null, needed: number) => {
+    if (held !== null && held < needed && !short.has(path)) short.set(path, { path, held, needed });
+  };
+  for (const field of survey.fields) note(field.path, field.allocated, field.snapshots * field.nodes);
+  const roles = new Map(survey.reading.roles.map(({ path, role }) => [path, role]));
+  const elements = (array: ArrayInfo) => array.shape.reduce((product, length) => product * length, 1);
+  for (const array of survey.contents.arrays) {
+    const role = roles.get(array.path);
+    if (role && usedRoles.includes(role)) note(array.path, array.allocated, elements(array));
+  }
+  return [...short.values()];
 }

@@ -1,4 +1,4 @@
-/** Frames of the reading process, one at a time: while nobody takes one, the pipe fills up and the sender waits. */
+/** Frames of the reading process by plan. While nobody waits for one, the pipe fills up and the sender waits. */
 import type { Readable } from 'node:stream';
 import { headerBytes, readHeader, type FrameHeader } from './frame.ts';
 
@@ -6,11 +6,15 @@ export interface Frame extends FrameHeader {
   values: Float64Array;
 }
 
+interface Waiter {
+  resolve: (frame: Frame) => void;
+  reject: (cause: unknown) => void;
+}
+
 export class FrameStream {
   readonly #pipe: Readable;
   readonly #ready: Frame[] = [];
-  #waiting: { resolve: (frame: Frame) => void; reject: (cause: unknown) => void } | null = null;
-  #failure: Error | null = null;
+  readonly #waiting = new Map<number, Waiter>();
   readonly #head = new Uint8Array(headerBytes);
   #headFilled = 0;
   #frame: Frame | null = null;
@@ -23,30 +27,31 @@ export class FrameStream {
     pipe.on('data', (bytes: Buffer) => {
       if (!this.#add(bytes)) onNonsense();
     });
-    pipe.on('error', () => onNonsense());
+    pipe.on('error', onNonsense);
     pipe.pause();
   }
 
-  /** Nobody takes frames, so the sender may be waiting for us. */
+  /** Nobody waits for a frame, so the sender may be waiting for us. */
   get held(): boolean {
-    return this.#waiting === null;
+    return this.#waiting.size === 0;
   }
 
-  next(): Promise<Frame> {
-    const frame = this.#ready.shift();
-    if (frame) return Promise.resolve(frame);
-    if (this.#failure) return Promise.reject(this.#failure);
+  next(plan: number): Promise<Frame> {
+    const at = this.#ready.findIndex((frame) => frame.plan === plan);
+    if (at >= 0) return Promise.resolve(this.#ready.splice(at, 1)[0]);
     return new Promise((resolve, reject) => {
-      this.#waiting = { resolve, reject };
+      this.#waiting.set(plan, { resolve, reject });
       this.#pipe.resume();
     });
   }
 
-  /** The sender is gone: whoever waits gets `cause`. */
-  fail(cause: Error): void {
-    this.#failure = cause;
-    this.#waiting?.reject(cause);
-    this.#waiting = null;
+  /** No frame will come for `plan` (or for any): whoever waits gets `cause`. */
+  fail(cause: unknown, plan?: number): void {
+    for (const [waited, { reject }] of [...this.#waiting]) {
+      if (plan !== undefined && plan !== waited) continue;
+      this.#waiting.delete(waited);
+      reject(cause);
+    }
   }
 
   #add(bytes: Uint8Array): boolean {
@@ -60,9 +65,8 @@ export class FrameStream {
         if (this.#headFilled < headerBytes) return true;
         const header = readHeader(this.#head);
         if (!header) return false;
-        const values = new Float64Array(header.count * header.nodes);
-        this.#frame = { ...header, values };
-        this.#body = new Uint8Array(values.buffer);
+        this.#frame = { ...header, values: new Float64Array(header.count * header.nodes) };
+        this.#body = new Uint8Array(this.#frame.values.buffer);
         this.#bodyFilled = 0;
       }
       const many = Math.min(this.#body.length - this.#bodyFilled, bytes.length - at);
@@ -77,10 +81,10 @@ export class FrameStream {
   #finish(frame: Frame): void {
     this.#frame = null;
     this.#headFilled = 0;
-    const waiting = this.#waiting;
-    this.#waiting = null;
-    this.#pipe.pause();
-    if (waiting) waiting.resolve(frame);
+    const waiter = this.#waiting.get(frame.plan);
+    this.#waiting.delete(frame.plan);
+    if (this.held) this.#pipe.pause();
+    if (waiter) waiter.resolve(frame);
     else this.#ready.push(frame);
   }
 }

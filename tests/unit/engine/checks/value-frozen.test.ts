@@ -33,6 +33,7 @@ describe('value/frozen', () => {
     ['zero and minus zero, which differ bit for bit', { fields: [{ values: [[0, 1], [-0, 1], [0, 1]] }] }, 0],
     ['a field updated every third snapshot beside one that moves', { fields: [{ values: held(12, 3) }, { name: 'v', values: movingValues(12) }] }, 0],
     ['the same, beginning within a hold', { fields: [{ values: held(13, 3, 1) }, { name: 'v', values: movingValues(13) }] }, 0],
+    ['a run that diverged to nothing but NaN', { fields: [{ values: [[1, 2], [2, 3], [NaN, NaN], [NaN, NaN]] }] }, 0],
     ['one snapshot', { fields: [{ values: pattern([1]) }] }, 0],
     ['two snapshots', { fields: [{ values: pattern([1, 2]) }] }, 0],
     ['no snapshot', { fields: [{ values: [] }] }, 0],

@@ -29,6 +29,7 @@ describe('value/repeated', () => {
     ['copies side by side, which are value/frozen', { fields: [{ values: pattern([0, 1, 1, 1, 2]) }] }, 0],
     ['a constant field', { fields: [{ values: pattern([0, 0, 0]) }] }, 0],
     ['the overlap of a restart that computed the same again', { stamps: [0, 1, 2, 3, 2, 3, 4], fields: [{ values: pattern([0, 1, 2, 3, 2, 3, 4]) }] }, 0],
+    ['snapshots of nothing but NaN', { fields: [{ values: [[NaN, NaN], [1, 2], [NaN, NaN]] }] }, 0],
     ['one snapshot', { fields: [{ values: pattern([0]) }] }, 0],
     ['two equal snapshots', { fields: [{ values: pattern([0, 0]) }] }, 0],
     ['no snapshot', { fields: [{ values: [] }] }, 0],
