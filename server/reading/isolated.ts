@@ -3,6 +3,7 @@
  * server: nothing here parses a byte, everything is bounded in memory and time, and a death of the reader is a typed
  * error 'file-unreadable'.
  */
+import { PennyweightError } from '#contract/error.ts';
 import { archiveContents, type ArchiveContents, type Reading } from '#contract/reading.ts';
 import type { Survey } from '../engine/survey.ts';
 import type { ArchiveFile } from './archive.ts';
@@ -48,7 +49,9 @@ export async function openIsolated(files: ArchiveFile[], limits: Partial<Limits>
   const reader = new ReadingProcess(name, bounds);
   let contents: ArchiveContents;
   try {
-    contents = archiveContents.parse(await reader.request('open', { files, limits: bounds }, bounds.contentsMillis));
+    const parsed = archiveContents.safeParse(await reader.request('open', { files, limits: bounds }, bounds.contentsMillis));
+    if (!parsed.success) throw new PennyweightError('file-unreadable', `${name} describes its contents in a way that cannot be; compare it with the original and upload it again.`, {}, { cause: parsed.error });
+    contents = parsed.data;
   } catch (cause) {
     await reader.close();
     throw cause;
@@ -77,10 +80,10 @@ async function* snapshotBlocks(
   const { plan, windows, blocks } = await reader.request('plan', { reading, fields, indices }, requestMillis);
   /** blocks that are asked for and have not come yet */
   let due = 0;
-  let refused: unknown = null;
+  let refused: PennyweightError | null = null;
   function ask(window: number): void {
     due += blocks[window];
-    reader.request('window', { plan, window }, requestMillis).catch((cause: unknown) => {
+    reader.request('window', { plan, window }, requestMillis).catch((cause: PennyweightError) => {
       // A window is read whole before its first block is sent: none of this one will come.
       due -= blocks[window];
       refused = cause;
@@ -106,8 +109,8 @@ async function* snapshotBlocks(
         due--;
       }
       await reader.request('forget', { plan }, requestMillis);
-    } catch (cause) {
-      refused ??= cause;
+    } catch {
+      // The reader is gone, and whoever asks next is told why.
     }
   }
 }

@@ -39,12 +39,18 @@ function shown({ entry, slug }: { entry: typeof auditLog.$inferSelect; slug: str
   };
 }
 
+/** Newest first; the next page starts below the last number of this one, so that entries made meanwhile shift nothing. */
+async function page(app: App, where: SQL | undefined, before: number | undefined, limit: number): Promise<AuditEntry[]> {
+  const rows = await app.db.select({ entry: auditLog, slug: campaign.slug }).from(auditLog).leftJoin(campaign, eq(campaign.id, auditLog.campaignId))
+    .where(and(where, before === undefined ? undefined : lt(auditLog.seq, before))).orderBy(desc(auditLog.seq)).limit(limit);
+  return rows.map(shown);
+}
+
 export async function listAudit(app: App, caller: Caller, query: Query): Promise<{ entries: AuditEntry[]; total: number }> {
   const where = await conditions(app, caller, query);
-  const base = () => app.db.select({ entry: auditLog, slug: campaign.slug }).from(auditLog).leftJoin(campaign, eq(campaign.id, auditLog.campaignId));
-  const rows = await base().where(and(where, query.before === undefined ? undefined : lt(auditLog.seq, query.before))).orderBy(desc(auditLog.seq)).limit(query.limit);
+  const entries = await page(app, where, query.before, query.limit);
   const [{ total }] = await app.db.select({ total: sql<number>`count(*)::int` }).from(auditLog).leftJoin(campaign, eq(campaign.id, auditLog.campaignId)).where(where);
-  return { entries: rows.map(shown), total };
+  return { entries, total };
 }
 
 /** RFC 4180 field; a leading = + - @ is defused, so that a spreadsheet does not run what somebody typed as a reason. */
@@ -54,17 +60,19 @@ function csvField(value: unknown): string {
   return /[",\r\n]/.test(safe) ? `"${safe.replaceAll('"', '""')}"` : safe;
 }
 
+const pageSize = 1000;
 const header = ['seq', 'at', 'actor', 'via', 'action', 'object_type', 'object_id', 'label', 'campaign', 'reason', 'before', 'after', 'hash'];
 
 /** The whole selection as lines, page by page, so that a million rows stream in bounded memory. */
 export async function* auditCsv(app: App, caller: Caller, query: Query): AsyncGenerator<string> {
+  const where = await conditions(app, caller, query);
   yield `${header.join(',')}\r\n`;
   for (let before = query.before; ; ) {
-    const { entries } = await listAudit(app, caller, { ...query, before, limit: 1000 });
+    const entries = await page(app, where, before, pageSize);
     for (const entry of entries) {
       yield `${[entry.seq, entry.at, entry.actor?.name ?? '', entry.via, entry.action, entry.objectType, entry.objectId, entry.label, entry.campaign, entry.reason, entry.before, entry.after, entry.hash].map(csvField).join(',')}\r\n`;
     }
-    if (entries.length < 1000) return;
+    if (entries.length < pageSize) return;
     before = entries[entries.length - 1].seq;
   }
 }

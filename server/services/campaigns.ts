@@ -86,10 +86,11 @@ export async function updateCampaign(app: App, caller: Caller, slug: string, inp
   const { version, reason, ...change } = input;
   refuseDoubles(change);
   await app.db.transaction(async (tx) => {
-    const [updated] = await tx.update(campaign).set({ ...change, version: version + 1 }).where(and(eq(campaign.id, row.id), eq(campaign.version, version))).returning();
-    if (!updated) throw new PennyweightError('stale-version', 'Somebody changed this campaign in the meantime: reload it and make your change again.', { version });
-    const before = Object.fromEntries(Object.keys(change).map((key) => [key, row[key as keyof CampaignRow]]));
-    await recordAudit(tx, caller, { action: 'campaign.update', objectType: 'campaign', objectId: row.id, label: row.title, campaignId: row.id, before, after: change, reason });
+    const [current] = await tx.select().from(campaign).where(and(eq(campaign.id, row.id), eq(campaign.version, version))).for('update');
+    if (!current) throw new PennyweightError('stale-version', 'Somebody changed this campaign in the meantime: reload it and make your change again.', { version });
+    await tx.update(campaign).set({ ...change, version: version + 1 }).where(eq(campaign.id, row.id));
+    const before = Object.fromEntries(Object.keys(change).map((key) => [key, current[key as keyof CampaignRow]]));
+    await recordAudit(tx, caller, { action: 'campaign.update', objectType: 'campaign', objectId: row.id, label: current.title, campaignId: row.id, before, after: change, reason });
   });
   return getCampaign(app, caller, slug);
 }

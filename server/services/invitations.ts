@@ -1,10 +1,11 @@
 /** Invitations by e-mail: only the SHA-256 of the secret is stored; one use, seven days. */
-import { and, desc, eq, isNull } from 'drizzle-orm';
+import { and, desc, eq, inArray, isNull } from 'drizzle-orm';
 import { about } from '#contract/access.ts';
 import type { Invitation, invitationView, newInvitation } from '#contract/account.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { z } from 'zod';
 import { hashOfSecret, newSecret } from '../access/secret-text.ts';
+import type { Transaction } from '../db/database.ts';
 import { campaign, invitation, user } from '../db/schema/index.ts';
 import { invitationLetter } from '../mail/letters.ts';
 import { makeAccount, selfCaller } from './accounts.ts';
@@ -27,10 +28,11 @@ const shown = (row: Row, slug: string | null, invitedBy: string): Invitation => 
 });
 
 export async function listInvitations(app: App, caller: Caller, slug?: string): Promise<Invitation[]> {
-  const rows = await app.db.select({ invitation, slug: campaign.slug, by: user.name }).from(invitation).leftJoin(campaign, eq(campaign.id, invitation.campaignId)).innerJoin(user, eq(user.id, invitation.invitedBy)).orderBy(desc(invitation.createdAt)).limit(500);
-  return rows
-    .filter((row) => caller.ability.can('read', about('Invitation', { campaignId: row.invitation.campaignId })) && (slug === undefined || row.slug === slug))
-    .map((row) => shown(row.invitation, row.slug, row.by));
+  const places = (await app.db.select({ id: campaign.id }).from(campaign)).map((row) => row.id).filter((id) => caller.ability.can('read', about('Invitation', { campaignId: id })));
+  const visible = caller.ability.can('read', about('Invitation', { campaignId: null })) ? undefined : inArray(invitation.campaignId, places);
+  const rows = await app.db.select({ invitation, slug: campaign.slug, by: user.name }).from(invitation).leftJoin(campaign, eq(campaign.id, invitation.campaignId)).innerJoin(user, eq(user.id, invitation.invitedBy))
+    .where(and(visible, slug === undefined ? undefined : eq(campaign.slug, slug))).orderBy(desc(invitation.createdAt)).limit(500);
+  return rows.map((row) => shown(row.invitation, row.slug, row.by));
 }
 
 export async function createInvitation(app: App, caller: Caller, input: z.output<typeof newInvitation>): Promise<Invitation> {
@@ -43,7 +45,12 @@ export async function createInvitation(app: App, caller: Caller, input: z.output
     await recordAudit(tx, caller, { action: 'invitation.create', objectType: 'invitation', objectId: made.id, label: made.email, campaignId: made.campaignId, after: { email: made.email, roles: made.roles } });
     return made;
   });
-  await app.mailer.send(invitationLetter(row.email, caller.user.name, where?.title ?? null, row.roles, `${app.config.url}/join/${secret}`, expiresAt));
+  try {
+    await app.mailer.send(invitationLetter(row.email, caller.user.name, where?.title ?? null, row.roles, `${app.config.url}/join/${secret}`, expiresAt));
+  } catch (cause) {
+    await app.db.transaction((tx) => takeBack(tx, caller, row, 'the letter could not be sent'));
+    throw new PennyweightError('unavailable', `The letter to ${row.email} could not be sent, so the invitation was taken back: check the mail server (PENNYWEIGHT_SMTP) and invite again.`, {}, { cause });
+  }
   return shown(row, where?.slug ?? null, caller.user.name);
 }
 
@@ -53,9 +60,13 @@ export async function revokeInvitation(app: App, caller: Caller, id: string): Pr
     if (!row || !caller.ability.can('read', about('Invitation', { campaignId: row.campaignId }))) throw new PennyweightError('not-found', 'There is no such invitation.');
     authorise(caller, 'delete', 'Invitation', { campaignId: row.campaignId });
     if (stateOf(row) !== 'open') throw new PennyweightError('wrong-state', `This invitation is ${stateOf(row)} already.`);
-    await tx.update(invitation).set({ revokedAt: new Date() }).where(eq(invitation.id, id));
-    await recordAudit(tx, caller, { action: 'invitation.revoke', objectType: 'invitation', objectId: id, label: row.email, campaignId: row.campaignId });
+    await takeBack(tx, caller, row, null);
   });
+}
+
+async function takeBack(tx: Transaction, caller: Caller, row: Row, why: string | null): Promise<void> {
+  await tx.update(invitation).set({ revokedAt: new Date() }).where(eq(invitation.id, row.id));
+  await recordAudit(tx, caller, { action: 'invitation.revoke', objectType: 'invitation', objectId: row.id, label: row.email, campaignId: row.campaignId, reason: why });
 }
 
 async function openInvitation(app: App, secret: string): Promise<Row> {
@@ -83,7 +94,8 @@ export async function acceptInvitation(app: App, secret: string, person: { name:
   await app.db.transaction(async (tx) => {
     const [used] = await tx.update(invitation).set({ acceptedAt: new Date() }).where(and(eq(invitation.id, row.id), isNull(invitation.acceptedAt), isNull(invitation.revokedAt))).returning({ id: invitation.id });
     if (!used) throw new PennyweightError('wrong-state', 'This invitation was used already: sign in.');
-    const [known] = await tx.select({ id: user.id, name: user.name, email: user.email }).from(user).where(eq(user.email, row.email));
+    const [known] = await tx.select({ id: user.id, name: user.name, email: user.email, active: user.active }).from(user).where(eq(user.email, row.email)).for('update');
+    if (known?.active === false) throw new PennyweightError('wrong-state', `The account of ${row.email} is closed: ask an administrator to open it again first.`);
     const member = known ?? (await makeAccount(tx, null, { ...person, email: row.email }));
     const before = await rolesOf(tx, member.id, row.campaignId);
     await setRoles(tx, member.id, row.campaignId, [...before, ...row.roles]);

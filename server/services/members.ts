@@ -26,7 +26,7 @@ export async function putMember(app: App, caller: Caller, slug: string, account:
   const where = await campaignBySlug(app.db, caller, slug);
   authorise(caller, 'update', 'Membership', { campaignId: where.id });
   await app.db.transaction(async (tx) => {
-    const [person] = await tx.select().from(user).where(eq(user.id, account));
+    const [person] = await tx.select().from(user).where(eq(user.id, account)).for('update');
     if (!person) throw new PennyweightError('not-found', 'There is no such account: invite the person by e-mail.');
     const before = await rolesOf(tx, account, where.id);
     await setRoles(tx, account, where.id, roles);
@@ -39,9 +39,9 @@ export async function removeMember(app: App, caller: Caller, slug: string, accou
   const where = await campaignBySlug(app.db, caller, slug);
   authorise(caller, 'delete', 'Membership', { campaignId: where.id });
   await app.db.transaction(async (tx) => {
+    const [person] = await tx.select({ name: user.name }).from(user).where(eq(user.id, account)).for('update');
     const before = await rolesOf(tx, account, where.id);
     if (before.length === 0) throw new PennyweightError('not-found', 'This person is no member of the campaign.');
-    const [person] = await tx.select({ name: user.name }).from(user).where(eq(user.id, account));
     await setRoles(tx, account, where.id, []);
     await recordAudit(tx, caller, { action: 'member.remove', objectType: 'member', objectId: account, label: person.name, campaignId: where.id, before: { roles: before } });
   });

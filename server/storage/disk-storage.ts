@@ -1,103 +1,135 @@
-/** Objects on the local disk: objects/ab/cdef…, uploads/, scratch/, builds/, releases/ below one root. */
+/**
+ * Storage in a folder of this machine:
+ *   objects/ab/<sha256>   bytes by content, read-only, never overwritten
+ *   uploads/<id>          what is being received
+ *   scratch/              folders and files in the making; the worker empties it when it starts
+ *   builds/, releases/    published folders
+ */
 import { createHash, randomUUID } from 'node:crypto';
-import { createReadStream, existsSync } from 'node:fs';
-import { mkdir, open, readdir, readFile, rename, rm, stat, statfs, writeFile } from 'node:fs/promises';
-import { dirname, join } from 'node:path';
+import { createReadStream } from 'node:fs';
+import { chmod, link, mkdir, readdir, readFile, rename, rm, stat, statfs, unlink, writeFile } from 'node:fs/promises';
+import { dirname, join, resolve, sep } from 'node:path';
 import { PennyweightError } from '#contract/error.ts';
+import { ensureFolder, fileSize, isCode, sync, syncTree } from './disk-folders.ts';
 import type { ObjectStorage } from './object-storage.ts';
 
-async function sync(path: string): Promise<void> {
-  const handle = await open(path, 'r');
-  try {
-    await handle.sync();
-  } finally {
-    await handle.close();
-  }
-}
+const readBlock = 2 ** 20;
 
-/** After a rename the folder is synced too: only then does the name survive a power cut. */
-async function moveInto(from: string, to: string): Promise<void> {
-  await mkdir(dirname(to), { recursive: true });
-  await rename(from, to);
-  await sync(dirname(to));
+/** Names come from ids and slugs; a name that could lead elsewhere is a fault of ours, not of a person. */
+function safeName(name: string): string {
+  const sound = name.split('/').every((part) => /^[A-Za-z0-9][A-Za-z0-9._-]*$/.test(part));
+  if (!sound) throw new PennyweightError('internal', `"${name}" cannot be the name of a folder in storage.`, { name });
+  return name;
 }
-
-async function syncTree(folder: string): Promise<void> {
-  for (const entry of await readdir(folder, { withFileTypes: true, recursive: true })) if (entry.isFile()) await sync(join(entry.parentPath, entry.name));
-}
-
-const safeName = /^[A-Za-z0-9][A-Za-z0-9._-]*$/;
 
 export async function diskStorage(root: string): Promise<ObjectStorage> {
-  for (const folder of ['objects', 'uploads', 'scratch', 'builds', 'releases']) await mkdir(join(root, folder), { recursive: true });
-  const objectPath = (sha256: string) => {
-    if (!/^[0-9a-f]{64}$/.test(sha256)) throw new PennyweightError('internal', `"${sha256}" is not the SHA-256 of an object.`);
-    return join(root, 'objects', sha256.slice(0, 2), sha256.slice(2));
-  };
-  const named = (kind: string, name: string) => {
-    if (!safeName.test(name)) throw new PennyweightError('internal', `"${name}" is not the name of a folder in storage.`);
-    return join(root, kind, name);
-  };
-  const known = async (sha256: string) => {
-    const path = objectPath(sha256);
-    if (!existsSync(path)) throw new PennyweightError('not-found', `The stored object ${sha256.slice(0, 12)}… is not there: restore it from the backup.`, { sha256 });
-    return path;
-  };
+  const folders = { objects: join(root, 'objects'), uploads: join(root, 'uploads'), scratch: join(root, 'scratch'), builds: join(root, 'builds'), releases: join(root, 'releases') };
+  for (const folder of Object.values(folders)) await ensureFolder(folder);
+
+  function objectPath(sha256: string): string {
+    if (!/^[0-9a-f]{64}$/.test(sha256)) throw new PennyweightError('internal', `"${sha256}" is no SHA-256 in lower-case hexadecimal digits.`, { sha256 });
+    return join(folders.objects, sha256.slice(0, 2), sha256);
+  }
+  const missing = (sha256: string, cause?: unknown) =>
+    new PennyweightError('not-found', `The object ${sha256.slice(0, 12)}… is missing from storage: restore it from a backup.`, { sha256 }, { cause });
+  async function sizeOf(sha256: string): Promise<number> {
+    const bytes = await fileSize(objectPath(sha256));
+    if (bytes === null) throw missing(sha256);
+    return bytes;
+  }
+  function belowScratch(path: string): string {
+    const whole = resolve(path);
+    if (!whole.startsWith(resolve(folders.scratch) + sep)) throw new PennyweightError('internal', `${path} does not lie in the scratch folder.`, { path });
+    return whole;
+  }
+
   const storage: ObjectStorage = {
-    localPath: known,
+    async localPath(sha256) {
+      await sizeOf(sha256);
+      return objectPath(sha256);
+    },
     async adopt(path, sha256) {
-      await sync(path);
       const target = objectPath(sha256);
-      if (existsSync(target)) await rm(path);
-      else await moveInto(path, target);
+      const bytes = (await stat(path)).size;
+      await sync(path);
+      await ensureFolder(dirname(target));
+      try {
+        // link(2) fails where rename(2) would overwrite.
+        await link(path, target);
+        await chmod(target, 0o444);
+      } catch (cause) {
+        if (!isCode(cause, 'EEXIST')) throw cause;
+        const held = await sizeOf(sha256);
+        if (held !== bytes) throw new PennyweightError('internal', `The object ${sha256.slice(0, 12)}… in storage has ${held} bytes and should have ${bytes}: restore it from a backup.`, { sha256, held, bytes });
+      }
+      await sync(dirname(target));
+      await unlink(path);
+      await sync(dirname(path));
     },
-    async has(sha256) {
-      return existsSync(objectPath(sha256));
-    },
-    async size(sha256) {
-      return (await stat(await known(sha256))).size;
-    },
-    read(sha256, range) {
-      return createReadStream(objectPath(sha256), { ...range, highWaterMark: 1 << 20 });
-    },
+    has: async (sha256) => (await fileSize(objectPath(sha256))) !== null,
+    size: sizeOf,
+    read: (sha256, range) => createReadStream(objectPath(sha256), { ...range, highWaterMark: readBlock }),
     async put(bytes) {
       const sha256 = createHash('sha256').update(bytes).digest('hex');
-      const scratch = join(root, 'scratch', randomUUID());
-      await writeFile(scratch, bytes);
-      await storage.adopt(scratch, sha256);
+      if (await storage.has(sha256)) return sha256;
+      const path = join(folders.scratch, `put-${randomUUID()}`);
+      await writeFile(path, bytes);
+      await storage.adopt(path, sha256);
       return sha256;
     },
     async get(sha256) {
-      return readFile(await known(sha256));
+      try {
+        return await readFile(objectPath(sha256));
+      } catch (cause) {
+        throw isCode(cause, 'ENOENT') ? missing(sha256, cause) : cause;
+      }
     },
     async scratchFolder(name) {
-      const folder = join(named('scratch', name), randomUUID());
-      await mkdir(folder, { recursive: true });
-      return folder;
+      const path = join(folders.scratch, safeName(name));
+      await rm(path, { recursive: true, force: true });
+      await mkdir(path, { recursive: true });
+      return path;
     },
     async publish(scratch, kind, name) {
-      await syncTree(scratch);
-      const target = named(kind, name);
-      await moveInto(scratch, target);
+      const source = belowScratch(scratch), target = storage.folder(kind, name);
+      if ((await fileSize(target)) !== null) throw new PennyweightError('conflict', `The folder ${kind}/${name} is in storage already.`, { kind, name });
+      await syncTree(source);
+      await ensureFolder(dirname(target));
+      await rename(source, target);
+      await sync(dirname(target));
       return target;
     },
     async discard(scratch) {
-      await rm(scratch, { recursive: true, force: true });
+      await rm(belowScratch(scratch), { recursive: true, force: true });
     },
-    folder: named,
+    async clearScratch() {
+      for (const entry of await readdir(folders.scratch)) await rm(join(folders.scratch, entry), { recursive: true, force: true });
+    },
+    folder: (kind, name) => join(folders[kind], safeName(name)),
     async removeFolder(kind, name) {
-      await rm(named(kind, name), { recursive: true, force: true });
-    },
-    uploads: () => join(root, 'uploads'),
-    async usage() {
-      let objects = 0, bytes = 0;
-      for (const entry of await readdir(join(root, 'objects'), { withFileTypes: true, recursive: true })) {
-        if (!entry.isFile()) continue;
-        objects++;
-        bytes += (await stat(join(entry.parentPath, entry.name))).size;
+      // Out of sight in one step, then bit by bit.
+      const aside = join(folders.scratch, `removed-${randomUUID()}`);
+      try {
+        await rename(storage.folder(kind, name), aside);
+      } catch (cause) {
+        if (isCode(cause, 'ENOENT')) return;
+        throw cause;
       }
-      const disk = await statfs(root);
-      return { objects, bytes, freeBytes: disk.bavail * disk.bsize };
+      await rm(aside, { recursive: true, force: true });
+    },
+    uploads: () => folders.uploads,
+    async usage() {
+      const { bavail, bsize } = await statfs(root);
+      let objects = 0, bytes = 0;
+      for (const prefix of await readdir(folders.objects)) {
+        const names = await readdir(join(folders.objects, prefix));
+        const sizes = await Promise.all(names.map((name) => fileSize(join(folders.objects, prefix, name))));
+        for (const size of sizes) {
+          objects += size === null ? 0 : 1;
+          bytes += size ?? 0;
+        }
+      }
+      return { objects, bytes, freeBytes: bavail * bsize };
     },
   };
   return storage;

@@ -17,6 +17,8 @@ export interface ObjectStorage {
   scratchFolder(name: string): Promise<string>;
   publish(scratch: string, kind: 'builds' | 'releases', name: string): Promise<string>;
   discard(scratch: string): Promise<void>;
+  /** Removes all that is in the making; only where nothing is (the worker when it starts). */
+  clearScratch(): Promise<void>;
   /** Absolute path of a published folder. */
   folder(kind: 'builds' | 'releases', name: string): string;
   removeFolder(kind: 'builds', name: string): Promise<void>;

@@ -2,7 +2,7 @@
  * The reading process: the only place where bytes from outside are parsed. It is forked by reading-process.ts with an
  * empty environment, answers one request after another, and is killed without regret.
  */
-import { writeSync } from 'node:fs';
+import { Socket } from 'node:net';
 import { setImmediate as breathe } from 'node:timers/promises';
 import { PennyweightError } from '#contract/error.ts';
 import { writeHeader, type FrameHeader } from './frame.ts';
@@ -17,23 +17,16 @@ function reply(message: Reply): void {
   process.send?.(message);
 }
 
-/** Waits for room in the pipe: the descriptor may be set not to. */
-function writeAll(bytes: Uint8Array): void {
-  const pause = new Int32Array(new SharedArrayBuffer(4));
-  let at = 0;
-  while (at < bytes.length) {
-    try {
-      at += writeSync(frameDescriptor, bytes, at, bytes.length - at);
-    } catch (cause) {
-      if ((cause as NodeJS.ErrnoException).code !== 'EAGAIN') throw cause;
-      Atomics.wait(pause, 0, 0, 1);
-    }
-  }
+const pipe = new Socket({ fd: frameDescriptor, readable: false });
+
+/** Done when the other side has taken the bytes, but for what the pipe itself holds. */
+function write(bytes: Uint8Array): Promise<void> {
+  return new Promise((resolve, reject) => pipe.write(bytes, (cause) => (cause ? reject(cause) : resolve())));
 }
 
-function sendFrame(header: FrameHeader, values: Float64Array): void {
-  writeAll(writeHeader(header));
-  writeAll(new Uint8Array(values.buffer, values.byteOffset, values.byteLength));
+async function sendFrame(header: FrameHeader, values: Float64Array): Promise<void> {
+  await write(writeHeader(header));
+  await write(new Uint8Array(values.buffer, values.byteOffset, values.byteLength));
 }
 
 async function answer({ id, operation, take }: Request): Promise<void> {

@@ -18,7 +18,7 @@ export class FrameStream {
   readonly #head = new Uint8Array(headerBytes);
   #headFilled = 0;
   #frame: Frame | null = null;
-  #body = new Uint8Array(0);
+  #body: Uint8Array = new Uint8Array(0);
   #bodyFilled = 0;
 
   /** `onNonsense`: the pipe gave bytes that are no frame. */

@@ -15,7 +15,7 @@ import type { OperationName, Operations } from './protocol.ts';
 
 export interface Surroundings {
   report(done: number, total: number, path: string): Promise<void>;
-  sendFrame(header: FrameHeader, values: Float64Array): void;
+  sendFrame(header: FrameHeader, values: Float64Array): Promise<void>;
 }
 
 type Handlers = { [Name in OperationName]: (take: Operations[Name]['take'], around: Surroundings) => Operations[Name]['answer'] | Promise<Operations[Name]['answer']> };
@@ -60,12 +60,12 @@ export function operations(): Handlers {
       const blocks = Array.from({ length: windows }, (_, w) => Math.ceil((plan.windows[w + 1] - plan.windows[w]) / plan.blockLength));
       return { plan: id, nodes: plan.nodes, windows, blocks };
     },
-    window({ plan: id, window }, { sendFrame }) {
+    async window({ plan: id, window }, { sendFrame }) {
       const plan = planOf(id);
       const { from, count, values } = readWindow(plan, window);
       for (let at = 0; at < count; at += plan.blockLength) {
         const many = Math.min(plan.blockLength, count - at);
-        sendFrame({ plan: id, from: from + at, count: many, nodes: plan.nodes }, values.subarray(at * plan.nodes, (at + many) * plan.nodes));
+        await sendFrame({ plan: id, from: from + at, count: many, nodes: plan.nodes }, values.subarray(at * plan.nodes, (at + many) * plan.nodes));
       }
       return null;
     },

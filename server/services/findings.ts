@@ -1,0 +1,76 @@
+/** Findings of archives as they are stored, and waivers: only cautions, by a steward, with a reason. */
+import { asc, eq } from 'drizzle-orm';
+import type { StoredFinding } from '#contract/archive.ts';
+import { PennyweightError } from '#contract/error.ts';
+import type { Finding } from '#contract/finding.ts';
+import type { Queryable } from '../db/database.ts';
+import { finding } from '../db/schema/index.ts';
+import { findArchive } from './archives.ts';
+import { recordAudit } from './audit.ts';
+import { authorise, mustSee, type App, type Caller } from './context.ts';
+import { peopleById } from './people.ts';
+
+export type FindingRow = typeof finding.$inferSelect;
+
+export async function shownFindings(tx: Queryable, rows: FindingRow[]): Promise<StoredFinding[]> {
+  const person = await peopleById(tx, rows.map((row) => row.waivedBy));
+  return rows.map((row) => ({
+    findingId: row.id, id: row.checkId, severity: row.severity, path: row.path, message: row.message, evidence: row.evidence, remedy: row.remedy,
+    state: row.waivedAt ? 'waived' : 'open', waiver: row.waivedAt ? { reason: row.waivedReason!, by: person(row.waivedBy!), at: row.waivedAt.toISOString() } : null,
+  }));
+}
+
+export async function listArchiveFindings(app: App, caller: Caller, archiveId: string): Promise<StoredFinding[]> {
+  await findArchive(app, caller, archiveId);
+  return shownFindings(app.db, await app.db.select().from(finding).where(eq(finding.archiveId, archiveId)).orderBy(asc(finding.position)));
+}
+
+/**
+ * Replaces the findings of an archive or draft. A waiver stays when the new finding says the very same thing at the same place: it was
+ * given for that evidence and no other.
+ */
+export async function replaceFindings(tx: Queryable, owner: { archiveId: string } | { draftId: string }, campaignId: string, found: Finding[]): Promise<void> {
+  const mine = 'archiveId' in owner ? eq(finding.archiveId, owner.archiveId) : eq(finding.draftId, owner.draftId);
+  const old = await tx.delete(finding).where(mine).returning();
+  const same = (row: FindingRow, each: Finding) => row.checkId === each.id && row.path === each.path && row.message === each.message;
+  if (found.length === 0) return;
+  await tx.insert(finding).values(found.map((each, position) => {
+    const waived = each.severity === 'caution' ? old.find((row) => row.waivedAt && same(row, each)) : undefined;
+    return {
+      ...owner, campaignId, checkId: each.id, severity: each.severity, path: each.path, message: each.message, evidence: each.evidence, remedy: each.remedy, position,
+      waivedReason: waived?.waivedReason ?? null, waivedBy: waived?.waivedBy ?? null, waivedAt: waived?.waivedAt ?? null,
+    };
+  }));
+}
+
+async function find(app: App, caller: Caller, id: string): Promise<FindingRow> {
+  const [row] = await app.db.select().from(finding).where(eq(finding.id, id));
+  if (!row) throw new PennyweightError('not-found', 'There is no such finding any more: the archive or draft was checked again. Reload the page.');
+  mustSee(caller, 'Finding', row, 'finding');
+  authorise(caller, 'waive', 'Finding', row);
+  return row;
+}
+
+const labelOf = (row: FindingRow) => `${row.checkId}${row.path ? ` at ${row.path}` : ''}`;
+
+export async function waiveFinding(app: App, caller: Caller, id: string, reason: string): Promise<StoredFinding> {
+  const row = await find(app, caller, id);
+  if (row.severity !== 'caution') throw new PennyweightError('wrong-state', row.severity === 'blocker' ? 'A blocker cannot be waived: it must be repaired.' : 'A note needs no waiver.');
+  const [after] = await app.db.transaction(async (tx) => {
+    const changed = await tx.update(finding).set({ waivedReason: reason, waivedBy: caller.user.id, waivedAt: new Date() }).where(eq(finding.id, id)).returning();
+    await recordAudit(tx, caller, { action: 'finding.waive', objectType: 'finding', objectId: id, label: labelOf(row), campaignId: row.campaignId, before: { waiver: row.waivedReason }, after: { message: row.message, archive: row.archiveId, draft: row.draftId }, reason });
+    return changed;
+  });
+  return (await shownFindings(app.db, [after]))[0];
+}
+
+export async function revokeWaiver(app: App, caller: Caller, id: string): Promise<StoredFinding> {
+  const row = await find(app, caller, id);
+  if (!row.waivedAt) throw new PennyweightError('wrong-state', 'This finding is not waived.');
+  const [after] = await app.db.transaction(async (tx) => {
+    const changed = await tx.update(finding).set({ waivedReason: null, waivedBy: null, waivedAt: null }).where(eq(finding.id, id)).returning();
+    await recordAudit(tx, caller, { action: 'finding.revoke-waiver', objectType: 'finding', objectId: id, label: labelOf(row), campaignId: row.campaignId, before: { waiver: row.waivedReason } });
+    return changed;
+  });
+  return (await shownFindings(app.db, [after]))[0];
+}
