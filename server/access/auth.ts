@@ -19,9 +19,11 @@ export function createAuth(app: App) {
     trustedOrigins: [config.url],
     telemetry: { enabled: false },
     database: drizzleAdapter(db, { provider: 'pg', schema }),
-    advanced: { cookiePrefix: 'pennyweight', useSecureCookies: config.url.startsWith('https://') },
+    advanced: { cookiePrefix: 'pennyweight', useSecureCookies: config.url.startsWith('https://'), disableOriginCheck: false, disableCSRFCheck: false },
     rateLimit: { enabled: false },
     logger: { level: 'error', log: (level, message) => log[level === 'error' ? 'warn' : 'debug']({ from: 'better-auth' }, message) },
+    // Refusals (wrong password, foreign origin) are answers, not faults; the library would print them to the console.
+    onAPIError: { onError: (error) => { if (error instanceof APIError) log.debug({ err: error }, 'sign-in service refused'); else log.error({ err: error }, 'sign-in service failed'); } },
     emailAndPassword: {
       enabled: true,
       disableSignUp: true,
@@ -42,17 +44,23 @@ export function createAuth(app: App) {
             if (!person?.active) throw new APIError('FORBIDDEN', { message: 'This account is closed. Ask an administrator.' });
           },
         },
+        delete: {
+          after: async (session, context) => {
+            if (context?.path !== '/sign-out') return;
+            const [person] = await db.select({ id: schema.user.id, name: schema.user.name, email: schema.user.email }).from(schema.user).where(eq(schema.user.id, session.userId));
+            if (person) await recordSignIn(app, 'account.sign-out', person, context.headers?.get('x-request-id') ?? null);
+          },
+        },
       },
     },
     hooks: {
       after: createAuthMiddleware(async (context) => {
         const requestId = context.headers?.get('x-request-id') ?? null;
-        const { newSession, session, returned } = context.context;
+        const { newSession, returned } = context.context;
         if (context.path === '/sign-in/email') {
           if (newSession) await recordSignIn(app, 'account.sign-in', newSession.user, requestId);
           else if (returned instanceof APIError) await recordSignIn(app, 'account.sign-in-refused', { id: null, email: String(context.body?.email ?? '') }, requestId);
         }
-        if (context.path === '/sign-out' && session) await recordSignIn(app, 'account.sign-out', session.user, requestId);
         if (context.path === '/request-password-reset') await recordSignIn(app, 'account.password-reset-requested', { id: null, email: String(context.body?.email ?? '') }, requestId);
       }),
     },

@@ -22,7 +22,7 @@ export async function callerOf(db: Database, person: Caller['user'], via: Caller
 export async function findCaller(db: Database, auth: Auth, headers: IncomingHttpHeaders, requestId: string | null): Promise<Found> {
   const bearer = /^Bearer\s+(\S+)$/i.exec(headers.authorization ?? '')?.[1];
   if (bearer) return byToken(db, bearer, requestId);
-  if (!headers.cookie?.includes('pennyweight.session_token=')) return null;
+  if (!/pennyweight\.session_token=[^;\s]/.test(headers.cookie ?? '')) return null;
   const session = await auth.api.getSession({ headers: fromNodeHeaders(headers) });
   if (!session) return { problem: new PennyweightError('session-expired', 'Your session has ended: sign in again. Nothing that you sent was lost.') };
   const [person] = await db.select({ id: user.id, name: user.name, email: user.email, active: user.active }).from(user).where(eq(user.id, session.user.id));

@@ -1,5 +1,5 @@
 /** Entry of the command `pennyweight`: finds the command, prints help, and turns every end into an exit status. */
-import { PennyweightError } from '#contract/error.ts';
+import { PennyweightError, statusOf, type Problem } from '#contract/error.ts';
 import type { Command } from './command.ts';
 import { exitStatus, type ExitStatus } from './exit-status.ts';
 import { processTerminal, type Terminal } from './terminal.ts';
@@ -21,6 +21,11 @@ ${rows.join('\n')}
 70 internal error.
 
 Example: pennyweight check run.h5`;
+}
+
+/** The problem document that the API would answer with. */
+function problemOf({ code, message, details }: PennyweightError): Problem {
+  return { type: `urn:pennyweight:problem:${code}`, title: code, status: statusOf[code], detail: message, code, details };
 }
 
 export async function run(args: string[], terminal: Terminal): Promise<ExitStatus> {
@@ -47,6 +52,7 @@ export async function run(args: string[], terminal: Terminal): Promise<ExitStatu
       return exitStatus.usage;
     }
     if (error instanceof PennyweightError && error.code !== 'internal') {
+      if (rest.includes('--json')) terminal.result(JSON.stringify(problemOf(error)));
       terminal.message(error.message);
       return exitStatus.blocker;
     }
@@ -57,5 +63,7 @@ export async function run(args: string[], terminal: Terminal): Promise<ExitStatu
 
 /** What pennyweight.js calls. */
 export async function main(args: string[]): Promise<void> {
+  // A reader that has seen enough ("| head") ends us quietly.
+  process.stdout.on('error', (error: NodeJS.ErrnoException) => process.exit(error.code === 'EPIPE' ? exitStatus.sound : exitStatus.internal));
   process.exitCode = await run(args, processTerminal());
 }

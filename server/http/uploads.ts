@@ -1,87 +1,98 @@
-/** tus 1.0.0 at /api/uploads: resumable upload of announced files. Every request is checked against the caller. */
-import type { Request, RequestHandler } from 'express';
+/**
+ * tus 1.0.0 at /api/uploads (https://tus.io/protocols/resumable-upload). Every request but OPTIONS needs a caller who announced
+ * the file; every refusal is a problem document.
+ */
 import { Server } from '@tus/server';
+import type { Request, RequestHandler } from 'express';
 import { tusPath } from '#contract/archive.ts';
-import { PennyweightError, statusOf } from '#contract/error.ts';
+import { PennyweightError, statusOf, type ErrorCode } from '#contract/error.ts';
 import type { App, Caller } from '../services/context.ts';
-import { admitUpload, fileForSending, finishFile } from '../services/uploads.ts';
-import { UploadStore } from '../storage/upload-store.ts';
+import { openUploadDoor } from '../services/uploads.ts';
 import { problemFor } from './refusals.ts';
 
-interface TusRequest {
-  headers: Headers;
-  runtime?: { node?: { req: unknown } };
+type ProtocolRequest = Parameters<Server['options']['onIncomingRequest'] & {}>[0];
+
+const methods = new Set(['POST', 'HEAD', 'PATCH', 'DELETE', 'OPTIONS']);
+/** How long a holder of a lock gets to store what it has when it is asked to let go, milliseconds. */
+const drain = 500;
+/** How long a sender is listened to after a refusal, so that it reads the refusal instead of a broken connection. */
+const linger = 5_000;
+
+/** What the protocol's library refuses, in our words; its own words say which part of the protocol was broken. */
+const protocolRefusals: Partial<Record<number, { code: ErrorCode; sentence: string }>> = {
+  404: { code: 'not-found', sentence: 'No such file was announced, or nothing was received of it yet.' },
+  409: { code: 'conflict', sentence: 'The bytes do not go on where the file ends on the server: ask for its offset and go on from there.' },
+  412: { code: 'invalid-input', sentence: 'This address speaks tus 1.0.0: send the header Tus-Resumable: 1.0.0.' },
+  413: { code: 'upload-too-long', sentence: 'More bytes were sent than were announced: announce the file again with its true size. What fits is kept.' },
+};
+
+function toPennyweight(status: number, words: string): PennyweightError {
+  const known = protocolRefusals[status];
+  if (known) return new PennyweightError(known.code, known.sentence);
+  if (status >= 500) return new PennyweightError('unavailable', 'The file could not be stored just now: what was received is kept; try again in a moment.');
+  return new PennyweightError('invalid-input', `The upload request is not valid: ${words.trim().replace(/[.\s]+$/, '')}.`);
 }
 
-function callerOf(request: TusRequest): Caller {
-  const req = request.runtime?.node?.req as Request;
-  if (!req.caller) throw req.callerProblem ?? new PennyweightError('not-signed-in', 'Sign in first, or send a personal token with the scope "hand-in". What was received is kept.');
-  return req.caller;
-}
-
-/** What the protocol's own refusals mean, by status. */
-function translate(error: Error | { status_code: number; body: string }): PennyweightError {
-  if (error instanceof PennyweightError) return error;
-  const { status_code: status, body } = error as { status_code?: number; body?: string };
-  switch (status) {
-    case 404: case 410: return new PennyweightError('not-found', 'This upload is not known here any more: announce the delivery again.');
-    case 409: return new PennyweightError('conflict', 'The upload is at another byte than the sender thinks (a second sender, or a lost answer): ask for its offset and go on from there.');
-    case 413: return new PennyweightError('upload-too-long', 'More bytes were sent than announced: announce the delivery again with the right length.');
-    case 400: case 403: case 412: case 415: case 501: return new PennyweightError('invalid-input', `The upload request is not valid: ${(body ?? '').trim()}.`);
-    default:
-      if ((error as NodeJS.ErrnoException).code === 'ENOSPC') return new PennyweightError('unavailable', 'The disk of the server is full: tell the administrator. What was received is kept.');
-      return new PennyweightError('unavailable', 'The bytes could not be stored just now: try again. What was received is kept.', {}, { cause: error });
+class UploadServer extends Server {
+  /** Whatever the library answers with an error status goes out as a problem document. */
+  override write(context: Parameters<Server['write']>[0], headers: Headers, status: number, body = ''): ReturnType<Server['write']> {
+    if (status < 400) return super.write(context, headers, status, body);
+    headers.set('Content-Type', 'application/problem+json');
+    const text = body.startsWith('{') ? body : JSON.stringify(problemFor(toPennyweight(status, body)));
+    return super.write(context, headers, (JSON.parse(text) as { status: number }).status, text);
   }
 }
 
-const stores = new WeakMap<App, UploadStore>();
+function expressRequest(req: ProtocolRequest): Request {
+  return (req.runtime?.node?.req ?? {}) as Request;
+}
 
-/** One store an application: it holds the running hashes. */
-export function uploadStoreOf(app: App): UploadStore {
-  const known = stores.get(app) ?? new UploadStore(app.storage.uploads());
-  stores.set(app, known);
-  return known;
+function callerOf(req: ProtocolRequest): Caller {
+  return expressRequest(req).caller as Caller;
 }
 
 export function uploadHandler(app: App): RequestHandler {
-  const store = uploadStoreOf(app);
-  const server = new Server({
+  const door = openUploadDoor(app);
+  const server = new UploadServer({
     path: tusPath,
-    datastore: store,
+    datastore: door.store,
+    locker: door.lock,
+    lockDrainTimeout: drain,
     relativeLocation: true,
+    // Only our own pages: without this the library allows every origin.
     allowedOrigins: [new URL(app.config.url).origin],
-    disableTerminationForFinishedUploads: true,
-    namingFunction: async (request, metadata) => {
-      const length = request.headers.get('upload-length');
-      return (await admitUpload(app, callerOf(request), metadata, length === null ? null : Number(length))).id;
+    namingFunction: (req, metadata) => {
+      const length = req.headers.get('upload-length');
+      return door.begin(callerOf(req), metadata ?? {}, length === null ? null : Number(length));
     },
-    onIncomingRequest: async (request, id) => {
-      await fileForSending(app, callerOf(request), id);
+    onIncomingRequest: async (req, id) => {
+      const { method } = req;
+      if (method === 'HEAD' || method === 'PATCH' || method === 'DELETE') await door.admit(callerOf(req), id, method);
     },
-    onUploadFinish: async (request, upload) => {
-      await finishFile(app, callerOf(request), store, upload.id);
+    onUploadFinish: async (req, upload) => {
+      await door.finish(callerOf(req), upload.id);
       return {};
     },
-    onResponseError: (request, error) => {
-      const refusal = translate(error);
-      const req = request.runtime?.node?.req as Request | undefined;
-      if (refusal.code === 'unavailable') app.log.warn({ err: refusal.cause, requestId: req?.requestId }, 'upload interrupted');
-      return { status_code: statusOf[refusal.code], body: JSON.stringify(problemFor(refusal, req?.requestId)) };
+    onResponseError: (req, error) => {
+      const { requestId } = expressRequest(req);
+      if ('status_code' in error && !(error instanceof PennyweightError)) return undefined;
+      if (!(error instanceof PennyweightError)) app.log.error({ err: error, requestId }, 'unexpected error while receiving');
+      const refusal = error instanceof PennyweightError ? error : new PennyweightError('unavailable', 'The file could not be stored just now: what was received is kept; try again in a moment.');
+      return { status_code: statusOf[refusal.code], body: JSON.stringify(problemFor(refusal, requestId)) };
     },
   });
   return async (req, res) => {
-    // Refusals leave here as text; they are problem documents.
-    const writeHead = res.writeHead.bind(res) as (...args: unknown[]) => typeof res;
-    res.writeHead = ((status: number, ...rest: unknown[]) => {
-      if (status >= 400) {
-        const headers = rest[rest.length - 1];
-        if (Array.isArray(headers)) {
-          for (let i = 0; i < headers.length; i += 2) if (String(headers[i]).toLowerCase() === 'content-type') headers.splice(i, 2);
-          headers.push('content-type', 'application/problem+json');
-        } else res.setHeader('content-type', 'application/problem+json');
+    if (!methods.has(req.method)) throw new PennyweightError('not-found', 'Nothing can be fetched here: an archive is downloaded from its own page.');
+    res.on('finish', () => {
+      if (!req.complete) setTimeout(() => req.complete || req.destroy(), linger).unref();
+    });
+    if (req.method !== 'OPTIONS') {
+      const { caller } = req;
+      if (!caller) throw req.callerProblem ?? new PennyweightError('not-signed-in', 'Sign in first, or send a personal token as "Authorization: Bearer …".');
+      if (caller.principal.token && !caller.principal.token.scopes.includes('hand-in')) {
+        throw new PennyweightError('token-scope', 'This token lacks the scope "hand-in": make one that has it.', { needed: 'hand-in' });
       }
-      return writeHead(status, ...rest);
-    }) as typeof res.writeHead;
+    }
     await server.handle(req, res);
   };
 }

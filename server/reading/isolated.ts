@@ -32,8 +32,11 @@ export interface IsolatedArchive {
   /** A reading of another archive of the same solver, with this archive's counts and parameter values, and what does not fit. */
   apply(reading: Reading): Promise<{ reading: Reading; mismatches: Mismatch[] }>;
   survey(reading: Reading, onProgress?: (doneBytes: number, totalBytes: number) => void): Promise<Survey>;
-  /** Blocks of at most about 32 MiB, or of one snapshot; the next is read while one is used, and no further ahead. */
-  snapshots(reading: Reading, fieldNames: string[], indices: ArrayLike<number>): AsyncGenerator<SnapshotBlock, void, undefined>;
+  /**
+   * Blocks of at most about 32 MiB, or of one snapshot; the next is read while one is used, and no further ahead. With
+   * `reuse` the values of a block are overwritten once the next is asked for: faster for whoever does not keep them.
+   */
+  snapshots(reading: Reading, fieldNames: string[], indices: ArrayLike<number>, options?: { reuse?: boolean }): AsyncGenerator<SnapshotBlock, void, undefined>;
   /** Time stamps, coordinates, cell edges and weights of a reading. */
   axes(reading: Reading): Promise<ReadingVectors>;
   /** A small array as doubles. */
@@ -62,7 +65,7 @@ export async function openIsolated(files: ArchiveFile[], limits: Partial<Limits>
     fits: (reading) => Promise.resolve(mismatchesOf(contents, reading)),
     apply: (reading) => reader.request('apply', { reading }, bounds.contentsMillis),
     survey: (reading, onProgress) => reader.request('survey', { reading }, bounds.surveyMillis, onProgress),
-    snapshots: (reading, fieldNames, indices) => snapshotBlocks(reader, bounds, reading, fieldNames, Uint32Array.from(indices)),
+    snapshots: (reading, fieldNames, indices, options) => snapshotBlocks(reader, bounds, reading, fieldNames, Uint32Array.from(indices), options?.reuse ?? false),
     axes: (reading) => reader.request('vectors', { reading }, bounds.requestMillis),
     vector: (path) => reader.request('vector', { path }, bounds.requestMillis),
     peakBytes: () => reader.peakBytes,
@@ -76,6 +79,7 @@ async function* snapshotBlocks(
   reading: Reading,
   fields: string[],
   indices: Uint32Array,
+  reuse: boolean,
 ): AsyncGenerator<SnapshotBlock, void, undefined> {
   const { plan, windows, blocks } = await reader.request('plan', { reading, fields, indices }, requestMillis);
   /** blocks that are asked for and have not come yet */
@@ -99,6 +103,7 @@ async function* snapshotBlocks(
         due--;
         if (block === blocks[window] - 1 && window + 1 < windows) ask(window + 1);
         yield { from, count, nodes, values };
+        if (reuse) reader.frames.giveBack(values);
       }
     }
   } finally {

@@ -22,6 +22,8 @@ export interface SnapshotPlan {
   windows: number[];
   indices: ArrayLike<number>;
   columns: { source: FieldSource; from: number; order: Uint32Array | null }[];
+  /** room for one window, used again by the next: touching new memory costs more than filling it */
+  room: Float64Array;
 }
 
 const blockBytes = 32 * 2 ** 20;
@@ -67,7 +69,9 @@ export function planSnapshots(archive: Archive, reading: Reading, names: string[
   const timeStep = Math.max(...columns.map(({ source }) => source.timeStep));
   const together = columns.some(({ source }) => source.timesTogether);
   const most = together ? fitting(windowBytes) : Math.min(fitting(windowBytes), Math.max(1, Math.floor(blockLength / timeStep)) * timeStep);
-  return { nodes, blockLength, windows: windowsOf(indices, most, timeStep), indices, columns };
+  const windows = windowsOf(indices, most, timeStep);
+  const longest = windows.reduce((length, from, w) => Math.max(length, from - (windows[w - 1] ?? 0)), 0);
+  return { nodes, blockLength, windows, indices, columns, room: new Float64Array(longest * nodes) };
 }
 
 /** Windows of at most `most` snapshots; each ends where the next chunk begins, when one begins inside. */
@@ -86,11 +90,11 @@ function windowsOf(indices: ArrayLike<number>, most: number, timeStep: number): 
   return windows;
 }
 
-/** Values of window `w`: count x nodes. */
+/** Values of window `w`: count x nodes, gone with the next call. */
 export function readWindow(plan: SnapshotPlan, w: number): { from: number; count: number; values: Float64Array } {
   const from = plan.windows[w];
   const count = plan.windows[w + 1] - from;
-  const values = new Float64Array(count * plan.nodes);
+  const values = plan.room.subarray(0, count * plan.nodes);
   const places = new Map<number, number[]>();
   for (let p = 0; p < count; p++) {
     const time = plan.indices[from + p];

@@ -1,6 +1,6 @@
 /** The isolated reading process as services and jobs see it (server/reading implements it, main.ts and worker.ts wire it). */
 import type { ArchiveContents, Reading } from '#contract/reading.ts';
-import type { Survey, SurveyAxis } from '../engine/survey.ts';
+import type { Survey } from '../engine/survey.ts';
 
 export interface ReadingMisfit {
   path: string;
@@ -18,7 +18,7 @@ export interface OpenArchive {
   survey(reading: Reading, onProgress?: (doneBytes: number, totalBytes: number) => void): Promise<Survey>;
   /** blocks of snapshots: count x nodes values, fields stacked in the order asked */
   snapshots(reading: Reading, fieldNames: string[], indices: ArrayLike<number>): AsyncGenerator<{ from: number; count: number; nodes: number; values: Float64Array }, void, undefined>;
-  axes(reading: Reading): Promise<{ stamps: Float64Array | null; axes: SurveyAxis[] }>;
+  axes(reading: Reading): Promise<Pick<Survey, 'stamps' | 'stampType' | 'stampPath' | 'axes' | 'spaceWeights' | 'timeWeights'>>;
   close(): Promise<void>;
 }
 

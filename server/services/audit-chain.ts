@@ -20,7 +20,17 @@ interface Row extends Record<string, unknown> {
   hash: string;
 }
 
-export async function verifyChain(db: Database): Promise<z.infer<typeof chainVerdict>> {
+/** A link noted outside the database at an earlier time. */
+export interface KnownLink {
+  seq: number;
+  hash: string;
+}
+
+/**
+ * The chain alone cannot tell that its end was cut off, or that all entries from some number on were hashed anew: that takes a link which
+ * was noted elsewhere before (`known`).
+ */
+export async function verifyChain(db: Database, known: KnownLink | null = null): Promise<z.infer<typeof chainVerdict>> {
   let expected = '0'.repeat(64), seq = 0;
   const broken = (message: string) => ({ intact: false, entries: seq, brokenAt: seq + 1, message, head: expected });
   for (;;) {
@@ -33,10 +43,12 @@ export async function verifyChain(db: Database): Promise<z.infer<typeof chainVer
       if (row.prev_hash !== expected) return broken(`Entry ${row.seq} does not follow the entry before it: its link is not that entry's hash.`);
       const hash = createHash('sha256').update(`${row.prev_hash}\n${row.canonical}`).digest('hex');
       if (hash !== row.hash) return broken(`Entry ${row.seq} was altered: its content does not give its hash.`);
+      if (known?.seq === seq + 1 && known.hash !== hash) return broken(`Entry ${row.seq} is not the one that was noted: the log was written anew from there or before.`);
       expected = row.hash;
       seq = Number(row.seq);
     }
     if (rows.length < pageSize) break;
   }
+  if (known && known.seq > seq) return { ...broken(`Entry ${known.seq} was noted, but the log ends with ${seq}: its end was cut off.`), brokenAt: known.seq };
   return { intact: true, entries: seq, brokenAt: null, message: `All ${seq} entries are in order, and each follows from the one before.`, head: expected };
 }

@@ -1,99 +1,108 @@
-/** Deliveries: announced before a byte travels, so that permission, names and quota are settled first. */
-import { stat } from 'node:fs/promises';
-import { join } from 'node:path';
-import { and, desc, eq, inArray, sql } from 'drizzle-orm';
+/** Deliveries: files announced before they are sent, on their way, or refused. */
+import { and, desc, eq, gt, inArray, or, sql } from 'drizzle-orm';
 import type { z } from 'zod';
 import { about } from '#contract/access.ts';
 import type { Delivery, newDelivery } from '#contract/archive.ts';
 import { PennyweightError } from '#contract/error.ts';
-import type { Queryable } from '../db/database.ts';
-import { archive, campaign, delivery, deliveryFile } from '../db/schema/index.ts';
+import { archive, campaign, delivery, deliveryFile, user } from '../db/schema/index.ts';
+import { receivedBytes, removeReceived } from '../storage/received-file.ts';
 import { recordAudit } from './audit.ts';
 import { campaignBySlug } from './campaign-lookup.ts';
-import { authorise, type App, type Caller } from './context.ts';
-import { peopleById } from './people.ts';
-import { bytesPhrase } from './phrases.ts';
+import { authorise, mustSee, type App, type Caller } from './context.ts';
+import { reserveBytes } from './quota.ts';
 
-const days = 7;
-type Row = typeof delivery.$inferSelect;
+/** A delivery without a byte for this long is given up. */
+export const idleDays = 7;
+export const untilGivenUp = () => sql`now() + make_interval(days => ${idleDays})`;
+/** Refused deliveries stay in the list for this long. */
+const refusedDays = 30;
 
-/** Bytes of a campaign's archives and of what is announced and still open. */
-export async function heldBytes(tx: Queryable, campaignId: string): Promise<number> {
-  const { rows } = await tx.execute<{ held: string }>(sql`
-    select (select coalesce(sum(bytes), 0) from archive where campaign_id = ${campaignId})
-      + (select coalesce(sum(f.bytes), 0) from delivery_file f join delivery d on d.id = f.delivery_id where d.campaign_id = ${campaignId} and d.state = 'open') as held`);
-  return Number(rows[0].held);
+interface Row {
+  delivery: typeof delivery.$inferSelect;
+  slug: string;
+  by: string;
+  archive: string | null;
+}
+
+const rows = (app: App) =>
+  app.db.select({ delivery, slug: campaign.slug, by: user.name, archive: archive.id }).from(delivery)
+    .innerJoin(campaign, eq(campaign.id, delivery.campaignId)).innerJoin(user, eq(user.id, delivery.createdBy)).leftJoin(archive, eq(archive.deliveryId, delivery.id));
+
+const factsOf = ({ delivery }: Pick<Row, 'delivery'>) => ({ campaignId: delivery.campaignId, createdBy: delivery.createdBy });
+
+async function describe(app: App, found: Row[]): Promise<Delivery[]> {
+  if (found.length === 0) return [];
+  const files = await app.db.select().from(deliveryFile).where(inArray(deliveryFile.deliveryId, found.map((row) => row.delivery.id))).orderBy(deliveryFile.position);
+  const folder = app.storage.uploads();
+  const received = await Promise.all(files.map(async (file) => (file.state === 'verified' ? file.bytes : file.state === 'receiving' ? ((await receivedBytes(folder, file.id)) ?? 0) : 0)));
+  return found.map(({ delivery: row, slug, by, archive: made }) => ({
+    id: row.id, campaign: slug, run: row.run, solver: row.solver, parameters: row.parameters, note: row.note, state: row.state, problem: row.problem,
+    files: files.flatMap((file, i) => (file.deliveryId === row.id ? [{ id: file.id, name: file.name, bytes: file.bytes, received: received[i], sha256: file.sha256, announcedSha256: file.announcedSha256, state: file.state, problem: file.problem }] : [])),
+    archive: made, createdBy: { id: row.createdBy, name: by }, createdAt: row.createdAt.toISOString(), updatedAt: row.updatedAt.toISOString(), expiresAt: row.expiresAt.toISOString(), findings: row.findings,
+  }));
+}
+
+/** On their way, or refused not long ago. */
+const current = () => or(eq(delivery.state, 'open'), and(eq(delivery.state, 'refused'), gt(delivery.updatedAt, sql`now() - make_interval(days => ${refusedDays})`)));
+
+export async function listDeliveries(app: App, caller: Caller, slug: string): Promise<Delivery[]> {
+  const { id } = await campaignBySlug(app.db, caller, slug);
+  const found = await rows(app).where(and(eq(delivery.campaignId, id), current())).orderBy(desc(delivery.createdAt));
+  return describe(app, found.filter((row) => caller.ability.can('read', about('Delivery', factsOf(row)))));
+}
+
+/** Of the caller's own, in all campaigns. */
+export async function myDeliveries(app: App, caller: Caller): Promise<Delivery[]> {
+  return describe(app, await rows(app).where(and(eq(delivery.createdBy, caller.user.id), current())).orderBy(desc(delivery.createdAt)).limit(50));
+}
+
+async function find(app: App, caller: Caller, id: string): Promise<Row> {
+  const [row] = await rows(app).where(eq(delivery.id, id));
+  if (!row) throw new PennyweightError('not-found', 'There is no such delivery.');
+  mustSee(caller, 'Delivery', factsOf(row), 'delivery');
+  return row;
+}
+
+export async function getDelivery(app: App, caller: Caller, id: string): Promise<Delivery> {
+  return (await describe(app, [await find(app, caller, id)]))[0];
+}
+
+function refuseNames(files: { name: string }[]): void {
+  const seen = new Set<string>();
+  for (const { name } of files) {
+    // eslint-disable-next-line no-control-regex -- control characters are what is looked for
+    if (/[/\\\u0000-\u001f]/.test(name) || name === '.' || name === '..') throw new PennyweightError('invalid-input', `"${name}" is not the plain name of a file: send it without folders.`, { name });
+    if (seen.has(name)) throw new PennyweightError('invalid-input', `Two of the files are named "${name}": an archive needs a name of its own for each.`, { name });
+    seen.add(name);
+  }
 }
 
 export async function createDelivery(app: App, caller: Caller, slug: string, input: z.output<typeof newDelivery>): Promise<Delivery> {
-  const where = await campaignBySlug(app.db, caller, slug);
-  authorise(caller, 'hand-in', 'Delivery', { campaignId: where.id });
-  const names = input.files.map((file) => file.name);
-  const double = names.find((name, i) => names.indexOf(name) !== i);
-  if (double !== undefined) throw new PennyweightError('invalid-input', `The file name "${double}" is there twice: the files of one archive need different names.`, { name: double });
-  const bad = names.find((name) => /[/\\\0]/.test(name) || name === '.' || name === '..');
-  if (bad !== undefined) throw new PennyweightError('invalid-input', `"${bad}" is not a file name: leave folders out.`, { name: bad });
-  const bytes = input.files.reduce((sum, file) => sum + file.bytes, 0);
+  const { id: campaignId } = await campaignBySlug(app.db, caller, slug);
+  authorise(caller, 'hand-in', 'Delivery', { campaignId, createdBy: caller.user.id });
+  const { files, ...announced } = input;
+  refuseNames(files);
   const id = await app.db.transaction(async (tx) => {
-    await tx.select({ id: campaign.id }).from(campaign).where(eq(campaign.id, where.id)).for('update');
-    const held = await heldBytes(tx, where.id);
-    if (held + bytes > where.quotaBytes) {
-      throw new PennyweightError('quota-exceeded', `${bytesPhrase(bytes)} do not fit: the campaign holds ${bytesPhrase(held)} of its ${bytesPhrase(where.quotaBytes)}. Ask an administrator for a larger quota.`, { bytes, held, quota: where.quotaBytes });
-    }
-    const [made] = await tx.insert(delivery).values({ campaignId: where.id, run: input.run, solver: input.solver, parameters: input.parameters, note: input.note, createdBy: caller.user.id, expiresAt: new Date(Date.now() + days * 86_400_000) }).returning();
-    await tx.insert(deliveryFile).values(input.files.map((file, position) => ({ deliveryId: made.id, position, name: file.name, bytes: file.bytes, announcedSha256: file.sha256 })));
-    await recordAudit(tx, caller, { action: 'delivery.announce', objectType: 'delivery', objectId: made.id, label: `${input.run}: ${names.slice(0, 3).join(', ')}`, campaignId: where.id, after: { run: input.run, files: input.files.slice(0, 50) } });
+    await reserveBytes(tx, campaignId, files.reduce((sum, file) => sum + file.bytes, 0));
+    const [made] = await tx.insert(delivery).values({ ...announced, campaignId, createdBy: caller.user.id, expiresAt: untilGivenUp() }).returning({ id: delivery.id });
+    await tx.insert(deliveryFile).values(files.map((file, position) => ({ deliveryId: made.id, position, name: file.name, bytes: file.bytes, announcedSha256: file.sha256 })));
+    await recordAudit(tx, caller, { action: 'delivery.announce', objectType: 'delivery', objectId: made.id, label: announced.run, campaignId, after: { ...announced, files: files.slice(0, 100), fileCount: files.length } });
     return made.id;
   });
   return getDelivery(app, caller, id);
 }
 
-async function describe(app: App, rows: (Row & { slug: string })[]): Promise<Delivery[]> {
-  if (rows.length === 0) return [];
-  const ids = rows.map((row) => row.id);
-  const files = await app.db.select().from(deliveryFile).where(inArray(deliveryFile.deliveryId, ids)).orderBy(deliveryFile.position);
-  const archives = await app.db.select({ id: archive.id, deliveryId: archive.deliveryId }).from(archive).where(inArray(archive.deliveryId, ids));
-  const person = await peopleById(app.db, rows.map((row) => row.createdBy));
-  const received = new Map<string, number>();
-  for (const file of files) {
-    if (file.state === 'receiving') received.set(file.id, await stat(join(app.storage.uploads(), file.id)).then((info) => info.size, () => 0));
-  }
-  return rows.map((row) => ({
-    id: row.id, campaign: row.slug, run: row.run, solver: row.solver, parameters: row.parameters, note: row.note, state: row.state, problem: row.problem, findings: row.findings,
-    archive: archives.find((each) => each.deliveryId === row.id)?.id ?? null, createdBy: person(row.createdBy),
-    createdAt: row.createdAt.toISOString(), updatedAt: row.updatedAt.toISOString(), expiresAt: row.expiresAt.toISOString(),
-    files: files.filter((file) => file.deliveryId === row.id).map((file) => ({
-      id: file.id, name: file.name, bytes: file.bytes, received: file.state === 'verified' ? file.bytes : (received.get(file.id) ?? 0), sha256: file.sha256, announcedSha256: file.announcedSha256, state: file.state, problem: file.problem,
-    })),
-  }));
-}
-
-/** Open and refused ones, newest first: those that the caller may read. */
-export async function listDeliveries(app: App, caller: Caller, slug: string): Promise<Delivery[]> {
-  const where = await campaignBySlug(app.db, caller, slug);
-  const rows = await app.db.select().from(delivery).where(and(eq(delivery.campaignId, where.id), inArray(delivery.state, ['open', 'refused']))).orderBy(desc(delivery.createdAt)).limit(200);
-  return describe(app, rows.filter((row) => caller.ability.can('read', about('Delivery', row))).map((row) => ({ ...row, slug: where.slug })));
-}
-
-export async function findDelivery(app: App, caller: Caller, id: string): Promise<Row & { slug: string }> {
-  const [row] = await app.db.select({ delivery, slug: campaign.slug }).from(delivery).innerJoin(campaign, eq(campaign.id, delivery.campaignId)).where(eq(delivery.id, id));
-  if (!row || !caller.ability.can('read', about('Delivery', row.delivery))) throw new PennyweightError('not-found', 'There is no such delivery, or it is not yours.');
-  return { ...row.delivery, slug: row.slug };
-}
-
-export async function getDelivery(app: App, caller: Caller, id: string): Promise<Delivery> {
-  return (await describe(app, [await findDelivery(app, caller, id)]))[0];
-}
-
-/** Gives an open delivery up; the received bytes go. A refused one is only taken off the list. */
-export async function cancelDelivery(app: App, caller: Caller, id: string, drop: (fileId: string) => Promise<void>): Promise<void> {
-  const row = await findDelivery(app, caller, id);
-  authorise(caller, 'cancel', 'Delivery', row);
+export async function cancelDelivery(app: App, caller: Caller, id: string): Promise<void> {
+  const row = await find(app, caller, id);
+  authorise(caller, 'cancel', 'Delivery', factsOf(row));
   const files = await app.db.transaction(async (tx) => {
-    const changed = await tx.update(delivery).set({ state: 'cancelled', updatedAt: new Date() }).where(and(eq(delivery.id, id), inArray(delivery.state, ['open', 'refused']))).returning({ id: delivery.id });
-    if (changed.length === 0) throw new PennyweightError('wrong-state', row.state === 'complete' ? 'This delivery is complete: its archive can be withdrawn by a steward.' : `This delivery is ${row.state} already.`);
-    await recordAudit(tx, caller, { action: 'delivery.cancel', objectType: 'delivery', objectId: id, label: row.run, campaignId: row.campaignId, before: { state: row.state }, after: { state: 'cancelled' } });
-    return tx.select({ id: deliveryFile.id }).from(deliveryFile).where(eq(deliveryFile.deliveryId, id));
+    const [{ state }] = await tx.select({ state: delivery.state }).from(delivery).where(eq(delivery.id, id)).for('update');
+    if (state !== 'open' && state !== 'refused') throw new PennyweightError('wrong-state', `This delivery is ${state} already.`, { state });
+    const all = await tx.select({ id: deliveryFile.id, state: deliveryFile.state }).from(deliveryFile).where(eq(deliveryFile.deliveryId, id));
+    if (all.every((file) => file.state === 'verified')) throw new PennyweightError('wrong-state', 'All files have arrived and are becoming an archive: withdraw the archive instead.', { state });
+    await tx.update(delivery).set({ state: 'cancelled', updatedAt: sql`now()` }).where(eq(delivery.id, id));
+    await recordAudit(tx, caller, { action: 'delivery.cancel', objectType: 'delivery', objectId: id, label: row.delivery.run, campaignId: row.delivery.campaignId, before: { state }, after: { state: 'cancelled' } });
+    return all;
   });
-  for (const file of files) await drop(file.id);
+  for (const file of files) await removeReceived(app.storage.uploads(), file.id);
 }

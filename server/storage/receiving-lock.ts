@@ -30,6 +30,10 @@ export class ReceivingLock implements Locker {
     if (holder) holder.lastSign = Date.now();
   }
 
+  holds(id: string): boolean {
+    return this.#holders.has(id);
+  }
+
   newLock(id: string): Lock {
     let mine: Holder | null = null;
     return {

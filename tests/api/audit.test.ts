@@ -82,16 +82,42 @@ describe('the chain', () => {
     expect(await auditor.call(routes.verifyAudit)).toMatchObject({ intact: true });
   });
 
-  it('from which an entry was taken is found, and so is one that was hashed anew', async () => {
-    const { rows: [taken] } = await sql('select * from audit_log where seq = 4');
-    await asSuperuser((client) => client.query('delete from audit_log where seq = 4'));
-    expect(await auditor.call(routes.verifyAudit)).toMatchObject({ intact: false, brokenAt: 4 });
-    const columns = Object.keys(taken);
-    // Back at its place, but with a hash of its own: the entry after it gives that away, unless all that follow are hashed anew.
-    await asSuperuser((client) =>
-      client.query(`insert into audit_log (${columns.map((name) => `"${name}"`).join(', ')}) values (${columns.map((_, i) => `$${i + 1}`).join(', ')})`, columns.map((name) => (name === 'hash' ? 'f'.repeat(64) : ['before', 'after'].includes(name) && taken[name] !== null ? JSON.stringify(taken[name]) : taken[name]))));
-    expect(await auditor.call(routes.verifyAudit)).toMatchObject({ intact: false, brokenAt: 4 });
-    await asSuperuser((client) => client.query('update audit_log set hash = $1 where seq = 4', [taken.hash]));
+  it('from which an entry was taken is found', async () => {
+    await asSuperuser(async (client) => {
+      await client.query('create temp table taken as select * from audit_log where seq = 4');
+      await client.query('delete from audit_log where seq = 4');
+      expect(await auditor.call(routes.verifyAudit)).toMatchObject({ intact: false, brokenAt: 4, entries: 3 });
+      await client.query('insert into audit_log select * from taken');
+    });
+    expect(await auditor.call(routes.verifyAudit)).toMatchObject({ intact: true });
+  });
+
+  it('in which a forger hashed an entry anew is given away by the entry after it', async () => {
+    await asSuperuser(async (client) => {
+      await client.query('create temp table kept as select * from audit_log where seq = 4');
+      await client.query(`update audit_log set actor_name = 'Somebody else' where seq = 4`);
+      await client.query(`update audit_log set hash = encode(sha256(convert_to(prev_hash || E'\n' || jsonb_build_array(seq, to_char(at at time zone 'UTC', 'YYYY-MM-DD"T"HH24:MI:SS.US"Z"'), actor_id, actor_name, via,
+        action, object_type, object_id, label, campaign_id, before, after, reason, request_id)::text, 'UTF8')), 'hex') where seq = 4`);
+      expect(await auditor.call(routes.verifyAudit)).toMatchObject({ intact: false, brokenAt: 5, entries: 4 });
+      await client.query('delete from audit_log where seq = 4');
+      await client.query('insert into audit_log select * from kept');
+    });
+    expect(await auditor.call(routes.verifyAudit)).toMatchObject({ intact: true });
+  });
+
+  it('that was cut short or hashed anew from somewhere on is told from the head that was noted before', async () => {
+    const noted = await verifyChain(app.parts.db);
+    const known = { seq: noted.entries, hash: noted.head };
+    expect(await verifyChain(app.parts.db, known)).toMatchObject({ intact: true });
+    await asSuperuser(async (client) => {
+      await client.query(`create temp table kept as select * from audit_log where seq = ${noted.entries}`);
+      await client.query('delete from audit_log where seq = $1', [noted.entries]);
+      expect(await verifyChain(app.parts.db)).toMatchObject({ intact: true, entries: noted.entries - 1 });
+      expect(await verifyChain(app.parts.db, known)).toMatchObject({ intact: false, brokenAt: noted.entries });
+      await client.query('insert into audit_log select * from kept');
+    });
+    expect(await verifyChain(app.parts.db, { ...known, hash: 'e'.repeat(64) })).toMatchObject({ intact: false, brokenAt: noted.entries });
+    expect(await verifyChain(app.parts.db, known)).toMatchObject({ intact: true });
   });
 });
 

@@ -85,6 +85,8 @@ export const archiveFile = pgTable('archive_file', {
 export const survey = pgTable('survey', {
   archiveId: uuid('archive_id').primaryKey().references(() => archive.id),
   readingHash: text('reading_hash').notNull(),
+  /** equal grids have equal hashes, so that only grids that differ are loaded to be compared */
+  gridHash: text('grid_hash'),
   object: text('object').notNull(),
   collectedAt: at('collected_at').notNull().defaultNow(),
 });

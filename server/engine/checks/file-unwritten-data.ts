@@ -7,7 +7,7 @@
 import type { Survey } from '../survey.ts';
 import type { Check, CheckSubject, Judgement } from './check.ts';
 import { evidenceOf } from './evidence.ts';
-import { counted, plainNumber, snapshotText } from './quantity.ts';
+import { counted, plainNumber, snapshotText, theCounted } from './quantity.ts';
 import { dropSnapshots } from './remedy.ts';
 import { shortArrays, snapshotCount, unwrittenTail } from './written-part.ts';
 
@@ -27,7 +27,7 @@ function judgeTail(subject: CheckSubject, survey: Survey, tail: number): Judgeme
     path: fields.length === 1 ? last.path : null,
     message: `The last ${counted(tail, 'snapshot')} of ${m} in ${names.slice(0, 3).join(', ')}${names.length > 3 ? ', …' : ''} ${tail === 1 ? 'holds' : 'hold'} nothing but the fill value ${plainNumber(value)}, from ${snapshotText(survey, indices[0])} on: the writer stopped there; drop them or upload the complete file.`,
     evidence: evidenceOf(indices, survey.stamps, { fields: names.slice(0, 20), written: m - tail }),
-    remedy: dropSnapshots(subject, indices, `Drop the ${counted(tail, 'unwritten snapshot')} at the end.`),
+    remedy: dropSnapshots(subject, indices, `Drop ${theCounted(tail, 'unwritten snapshot')} at the end.`),
   };
 }
 
@@ -51,7 +51,7 @@ export const fileUnwrittenData: Check = {
         path,
         message: `${path} holds ${held} of the ${needed} values that its shape promises; the rest was never written and would be read as the fill value${indices.length > 0 ? `, from ${snapshotText(survey, indices[0])} on` : ''}: trim the record to what was written or upload the complete file.`,
         evidence: { ...evidenceOf(indices, survey.stamps), count: needed - held, held, needed },
-        remedy: indices.length > 0 ? dropSnapshots(subject, indices, `Drop the ${counted(indices.length, 'unwritten snapshot')} at the end.`) : null,
+        remedy: indices.length > 0 ? dropSnapshots(subject, indices, `Drop ${theCounted(indices.length, 'unwritten snapshot')} at the end.`) : null,
       };
     });
     const told = survey.fields.some((field) => judgements.some(({ path }) => path === field.path));

@@ -10,7 +10,7 @@ import { evidenceLength } from './evidence.ts';
 import { counted, plainNumber } from './quantity.ts';
 import { gridAxes, nodeCoordinates, roundOff } from './space-axes.ts';
 
-interface Grid {
+export interface Grid {
   name: string;
   nodes: Float64Array | null;
   count: number;
@@ -36,7 +36,7 @@ function difference(ours: Grid, theirs: Grid): string | null {
   return null;
 }
 
-function compare(ours: Grid[], theirs: Grid[]): string | null {
+export function compareGrids(ours: Grid[], theirs: Grid[]): string | null {
   for (const axis of ours) {
     const other = theirs.find((candidate) => candidate.name === axis.name);
     const clause = other ? difference(axis, other) : `the axis ${axis.name} is missing there`;
@@ -59,7 +59,7 @@ export const gridDiffers: Check = {
     if (node && !ours.includes(node)) ours.push(node);
     if (ours.length === 0) return [];
     const differing = otherGrids.flatMap(({ archive, axes }) => {
-      const clause = compare(ours, axes);
+      const clause = compareGrids(ours, axes);
       return clause ? [{ archive, clause }] : [];
     });
     if (differing.length === 0) return [];

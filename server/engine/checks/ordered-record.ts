@@ -3,7 +3,8 @@
  * restart or one repeated stamp would also be reported as uneven spacing. `indices` leads back to the storage order.
  */
 import type { CheckSubject } from './check.ts';
-import { describeOrder } from './record-order.ts';
+import { describeOrder, type RecordOrder } from './record-order.ts';
+import { roundOff } from './space-axes.ts';
 import { writtenStamps } from './written-part.ts';
 
 export interface OrderedRecord {
@@ -12,10 +13,16 @@ export interface OrderedRecord {
   indices: number[];
 }
 
+/** How the written part of the stamps runs; null without time. */
+export function orderOf(subject: CheckSubject): RecordOrder | null {
+  const stamps = writtenStamps(subject);
+  return stamps && describeOrder(stamps, roundOff(subject.survey!.stampType));
+}
+
 export function orderedRecord(subject: CheckSubject): OrderedRecord | null {
   const stamps = writtenStamps(subject);
   if (!stamps) return null;
-  const indices = describeOrder(stamps).kept;
+  const indices = orderOf(subject)!.kept;
   return { stamps: Float64Array.from(indices, (j) => stamps[j]), indices };
 }
 

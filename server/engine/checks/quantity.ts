@@ -39,3 +39,8 @@ export function snapshotText(survey: Survey, index: number): string {
 export function counted(count: number, one: string, many = `${one}s`): string {
   return `${count} ${count === 1 ? one : many}`;
 }
+
+/** "the snapshot", "the 3 snapshots" */
+export function theCounted(count: number, one: string, many = `${one}s`): string {
+  return count === 1 ? `the ${one}` : `the ${count} ${many}`;
+}

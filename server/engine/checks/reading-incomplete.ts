@@ -44,7 +44,9 @@ export const readingIncomplete: Check = {
     const { fields } = survey.reading;
     const told = new Set(survey.mismatches.map((mismatch) => mismatch.path));
     const faults = fields.filter((field) => !told.has(field.path)).flatMap((field) => judgeField(survey, field));
-    if (fields.length === 0) {
+    // A link out of the archive or damage is the cause then, and is told by its own check.
+    const causeTold = survey.contents.outsideLinks.length > 0 || survey.contents.damaged.length > 0;
+    if (fields.length === 0 && !causeTold) {
       faults.unshift(judgement(null, `No array of the archive is assigned as a field (${survey.contents.arrays.length} found); say in the reading which arrays are fields.`, { count: survey.contents.arrays.length }));
     }
     const names = new Set(fields.map((field) => field.name));

@@ -7,8 +7,13 @@
  * that is no wider than 1.75 x the wider of its two adjacent intervals. A stamp that was merely swapped falls into a hole
  * of twice the usual spacing, as do stamps sorted as text (1, 10, 11, 2): those are out of order, and sorting mends them
  * where dropping a segment would lose data. A single stamp that goes back and returns beyond the earlier end by one leap
- * over stamps, wider than 1.75 x the interval that follows, is a stray, and so out of order. When more than a third of the steps go back (half do in a random order), the record is shuffled.
+ * over stamps, wider than 1.75 x the interval that follows, is a stray, and so out of order.
+ * There is no restart, and the record is out of order throughout, when more than a third of the steps go back (half do in a
+ * random order), or when all stamps are distinct and sorting spaces them evenly (within 1.5 : 1; a restart doubles the
+ * density of its overlap).
  * A restart explains the stamps of both segments in the overlap, so equal stamps there are no duplicates.
+ * Neighbours count as equal when they are so to rounding, forward or back: at most 8 units of round-off of the stored type
+ * apart and below a thousandth of the intervals around them (a checkpoint whose time was computed anew).
  * Method: common practice, no source; 1.75 lies between 1.5 (a growing step, at the end of a chain) and 2 (a swap).
  */
 export interface Restart {
@@ -31,13 +36,18 @@ export interface RecordOrder {
   restarts: Restart[];
   /** later index of two equal stamps */
   duplicates: number[];
+  /** those of them that are equal to rounding only */
+  nearlyEqual: number[];
   /** snapshots that remain, in strictly increasing order of time: restarts keep the later segment, duplicates the first */
   kept: number[];
 }
 
 const holeRatio = 1.75;
 const shuffledShare = 1 / 3;
+const evenRatio = 1.5;
 const votes = 5;
+const equalUnits = 8;
+const equalShare = 1e-3;
 
 /** First position in the ascending `chain` whose stamp is >= `value`. */
 function lowerBound(chain: number[], t: Float64Array, value: number): number {
@@ -85,21 +95,49 @@ function isRestart(chain: number[], t: Float64Array, finite: number[], position:
   return balance > 0 || (balance === 0 && first);
 }
 
+function sortsEvenly(t: Float64Array, indices: number[]): boolean {
+  const sorted = Float64Array.from(indices, (j) => t[j]).sort();
+  let least = Infinity;
+  let most = 0;
+  for (let i = 1; i < sorted.length; i++) {
+    least = Math.min(least, sorted[i] - sorted[i - 1]);
+    most = Math.max(most, sorted[i] - sorted[i - 1]);
+  }
+  return least > 0 && most <= evenRatio * least;
+}
+
+/** Whether the stamp at `position` repeats the one before it to rounding, but not exactly. */
+function nearlyRepeats(t: Float64Array, finite: number[], position: number, unit: number): boolean {
+  const [before, here] = [t[finite[position - 1]], t[finite[position]]];
+  const apart = Math.abs(here - before);
+  if (apart === 0 || apart > equalUnits * unit * Math.max(Math.abs(before), Math.abs(here))) return false;
+  const around = Math.max(
+    position >= 2 ? before - t[finite[position - 2]] : 0,
+    position + 1 < finite.length ? t[finite[position + 1]] - here : 0,
+  );
+  return apart <= equalShare * around;
+}
+
 /**
- * Order of the stamps `t` [m]. O(m log m). Empty and one-stamp records are in order.
+ * Order of the stamps `t` [m]; `unit` is the round-off of their stored type, 0 to compare exactly. O(m log m).
+ * Empty and one-stamp records are in order.
  */
-export function describeOrder(t: Float64Array): RecordOrder {
+export function describeOrder(t: Float64Array, unit = 0): RecordOrder {
   const finite: number[] = [];
   const undefinedStamps: number[] = [];
   for (let j = 0; j < t.length; j++) (Number.isFinite(t[j]) ? finite : undefinedStamps).push(j);
 
   let jumps = 0;
   const duplicates = new Set<number>();
+  const nearlyEqual: number[] = [];
   for (let i = 1; i < finite.length; i++) {
-    if (t[finite[i]] < t[finite[i - 1]]) jumps++;
+    if (nearlyRepeats(t, finite, i, unit)) nearlyEqual.push(finite[i]);
+    else if (t[finite[i]] < t[finite[i - 1]]) jumps++;
     else if (t[finite[i]] === t[finite[i - 1]]) duplicates.add(finite[i]);
   }
-  const shuffled = jumps > shuffledShare * finite.length;
+  for (const j of nearlyEqual) duplicates.add(j);
+  const distinct = duplicates.size === 0 ? finite : finite.filter((j) => !duplicates.has(j));
+  const shuffled = jumps > 0 && (jumps > shuffledShare * finite.length || sortsEvenly(t, distinct));
 
   const backward: number[] = [];
   const restarts: Restart[] = [];
@@ -107,6 +145,7 @@ export function describeOrder(t: Float64Array): RecordOrder {
   let chain: number[] = [];
   for (let i = 0; i < finite.length; i++) {
     const j = finite[i];
+    if (duplicates.has(j)) continue;
     if (i > 0 && t[j] < t[finite[i - 1]]) {
       if (!shuffled && isRestart(chain, t, finite, i)) {
         const keep = lowerBound(chain, t, t[j]);
@@ -135,5 +174,5 @@ export function describeOrder(t: Float64Array): RecordOrder {
     if (kept.length > 0 && t[kept[kept.length - 1]] === t[j]) duplicates.add(j);
     else kept.push(j);
   }
-  return { undefinedStamps, backward, restarts, duplicates: [...duplicates].sort((a, b) => a - b), kept };
+  return { undefinedStamps, backward, restarts, duplicates: [...duplicates].sort((a, b) => a - b), nearlyEqual, kept };
 }

@@ -1,15 +1,14 @@
 /**
- * time/duplicate: two snapshots at the same time, side by side or, after sorting, from different places. Equal stamps of a
- * restart's overlap are not counted (record-order.ts): keeping one segment removes them.
+ * time/duplicate: two snapshots at the same time (neighbours: to rounding), side by side or, after sorting, from different
+ * places. Equal stamps of a restart's overlap are not counted (record-order.ts): keeping one segment removes them.
  * Where the fields differ at equal stamps, the stamps may be rounded too coarsely to tell the snapshots apart; said so.
  */
 import type { Check } from './check.ts';
 import { evidenceOf } from './evidence.ts';
-import { stampPath } from './ordered-record.ts';
+import { orderOf, stampPath } from './ordered-record.ts';
 import { counted, snapshotText } from './quantity.ts';
-import { describeOrder } from './record-order.ts';
-import { orderRecord } from './remedy.ts';
-import { writtenStamps } from './written-part.ts';
+import { dropSnapshots, orderRecord } from './remedy.ts';
+import { sameTime, writtenStamps } from './written-part.ts';
 
 export const timeDuplicate: Check = {
   id: 'time/duplicate',
@@ -20,11 +19,12 @@ export const timeDuplicate: Check = {
   judge(subject) {
     const { survey } = subject;
     const stamps = writtenStamps(subject);
-    if (!survey || !stamps) return [];
-    const { duplicates } = describeOrder(stamps);
+    const order = orderOf(subject);
+    if (!survey || !stamps || !order) return [];
+    const { duplicates, nearlyEqual } = order;
     if (duplicates.length === 0) return [];
     const fields = survey.fields.filter((field) => field.hash.length >= stamps.length);
-    const differing = duplicates.filter((j) => j > 0 && stamps[j] === stamps[j - 1] && fields.some((field) => field.hash[j] !== field.hash[j - 1])).length;
+    const differing = duplicates.filter((j) => j > 0 && sameTime(survey, j, j - 1) && fields.some((field) => field.hash[j] !== field.hash[j - 1])).length;
     const [first] = duplicates;
     const advice =
       differing === 0
@@ -35,7 +35,10 @@ export const timeDuplicate: Check = {
         path: stampPath(subject),
         message: `${counted(duplicates.length, 'time stamp repeats', 'time stamps repeat')} an earlier one, first at ${snapshotText(survey, first)}; ${advice}`,
         evidence: evidenceOf(duplicates, stamps, { fieldsDiffer: differing }),
-        remedy: orderRecord({ dropDuplicates: true }, 'Keep the first snapshot of each time and drop the repeated ones.'),
+        remedy:
+          nearlyEqual.length > 0
+            ? dropSnapshots(subject, duplicates, 'Keep the first snapshot of each time and drop the repeated ones.')
+            : orderRecord({ dropDuplicates: true }, 'Keep the first snapshot of each time and drop the repeated ones.'),
       },
     ];
   },

@@ -4,9 +4,8 @@
  */
 import type { Check, Judgement } from './check.ts';
 import { evidenceOf } from './evidence.ts';
-import { stampPath } from './ordered-record.ts';
-import { counted, stampText } from './quantity.ts';
-import { describeOrder } from './record-order.ts';
+import { orderOf, stampPath } from './ordered-record.ts';
+import { counted, stampText, theCounted } from './quantity.ts';
 import { dropSnapshots, orderRecord } from './remedy.ts';
 import { writtenStamps } from './written-part.ts';
 
@@ -19,8 +18,9 @@ export const timeNotIncreasing: Check = {
   judge(subject) {
     const { survey } = subject;
     const stamps = writtenStamps(subject);
-    if (!survey || !stamps) return [];
-    const { backward, undefinedStamps } = describeOrder(stamps);
+    const order = orderOf(subject);
+    if (!survey || !stamps || !order) return [];
+    const { backward, undefinedStamps } = order;
     const path = stampPath(subject);
     const judgements: Judgement[] = [];
     if (backward.length > 0) {
@@ -37,7 +37,7 @@ export const timeNotIncreasing: Check = {
         path,
         message: `${counted(undefinedStamps.length, 'time stamp is', 'time stamps are')} NaN or infinite, first at snapshot ${undefinedStamps[0]}: drop ${undefinedStamps.length === 1 ? 'this snapshot' : 'these snapshots'} or correct the time in the reading.`,
         evidence: evidenceOf(undefinedStamps, null),
-        remedy: dropSnapshots(subject, undefinedStamps, `Drop the ${counted(undefinedStamps.length, 'snapshot')} without a time.`),
+        remedy: dropSnapshots(subject, undefinedStamps, `Drop ${theCounted(undefinedStamps.length, 'snapshot')} without a time.`),
       });
     }
     return judgements;

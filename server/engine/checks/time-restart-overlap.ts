@@ -4,9 +4,8 @@
  */
 import type { Check } from './check.ts';
 import { evidenceOf } from './evidence.ts';
-import { stampPath } from './ordered-record.ts';
+import { orderOf, stampPath } from './ordered-record.ts';
 import { counted, stampText } from './quantity.ts';
-import { describeOrder } from './record-order.ts';
 import { orderRecord } from './remedy.ts';
 import { writtenStamps } from './written-part.ts';
 
@@ -19,8 +18,9 @@ export const timeRestartOverlap: Check = {
   judge(subject) {
     const { survey } = subject;
     const stamps = writtenStamps(subject);
-    if (!survey || !stamps) return [];
-    const { restarts } = describeOrder(stamps);
+    const order = orderOf(subject);
+    if (!survey || !stamps || !order) return [];
+    const { restarts } = order;
     if (restarts.length === 0) return [];
     const [first] = restarts;
     const overlapped = restarts.reduce((sum, restart) => sum + restart.overlapped, 0);

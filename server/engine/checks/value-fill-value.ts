@@ -10,7 +10,7 @@
 import type { FieldSurvey } from '../survey.ts';
 import type { Check, CheckSubject, Judgement } from './check.ts';
 import { evidenceOf } from './evidence.ts';
-import { counted, plainNumber, snapshotText } from './quantity.ts';
+import { counted, plainNumber, snapshotText, theCounted } from './quantity.ts';
 import { dropSnapshots } from './remedy.ts';
 import { placeText } from './space-axes.ts';
 import { writtenCount } from './written-part.ts';
@@ -77,7 +77,7 @@ function judgeCandidate(subject: CheckSubject, field: FieldSurvey, candidate: Ca
       path: field.path,
       message: `${field.path} holds the ${candidate.declared ? 'declared fill value' : 'likely fill value'} ${plainNumber(candidate.value)} ${counted(total, 'time')} in ${counted(affected.length, 'snapshot')} of ${m}, first in ${snapshotText(survey, affected[0])}${node >= 0 ? ` at node ${node}` : ''}${place ? ` (${place})` : ''}; ${few ? 'mask these nodes or drop these snapshots' : 'mask these nodes'}.`,
       evidence: evidenceOf(affected, survey.stamps, { count: total, snapshots: affected.length, value: candidate.value, declared: candidate.declared }),
-      remedy: few ? dropSnapshots(subject, affected, `Drop the ${counted(affected.length, 'snapshot')} that ${affected.length === 1 ? 'holds' : 'hold'} fill values.`) : null,
+      remedy: few ? dropSnapshots(subject, affected, `Drop ${theCounted(affected.length, 'snapshot')} that ${affected.length === 1 ? 'holds' : 'hold'} fill values.`) : null,
     },
   ];
 }

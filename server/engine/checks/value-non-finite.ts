@@ -6,7 +6,7 @@
 import type { FieldSurvey } from '../survey.ts';
 import type { Check, CheckSubject, Judgement } from './check.ts';
 import { evidenceOf } from './evidence.ts';
-import { counted, snapshotText } from './quantity.ts';
+import { counted, snapshotText, theCounted } from './quantity.ts';
 import { dropSnapshots } from './remedy.ts';
 import { placeText } from './space-axes.ts';
 import { writtenCount } from './written-part.ts';
@@ -33,7 +33,7 @@ function judgeField(subject: CheckSubject, field: FieldSurvey): Judgement[] {
       path: field.path,
       message: `${field.path} holds ${counted(total, 'NaN or infinite value')} in ${counted(affected.length, 'snapshot')} of ${m}, first in ${snapshotText(survey, first)} at node ${node}${place ? ` (${place})` : ''}; ${advice}.`,
       evidence: evidenceOf(affected, survey.stamps, { count: total, snapshots: affected.length, firstNode: node, ...(place ? { place } : {}) }),
-      remedy: few ? dropSnapshots(subject, affected, `Drop the ${counted(affected.length, 'snapshot')} with values that are not finite.`) : null,
+      remedy: few ? dropSnapshots(subject, affected, `Drop ${theCounted(affected.length, 'snapshot')} with values that are not finite.`) : null,
     },
   ];
 }

@@ -14,6 +14,7 @@
 import type { ArrayInfo, Role } from '#contract/reading.ts';
 import type { FieldSurvey, Survey } from '../survey.ts';
 import type { CheckSubject } from './check.ts';
+import { roundOff } from './space-axes.ts';
 
 /** NC_FILL_FLOAT and NC_FILL_DOUBLE (as float32 and as float64), NC_FILL_SHORT, NC_FILL_INT of netcdf.h. */
 const netcdfFills = [9.969209968386869e36, -32767, -2147483647];
@@ -51,6 +52,14 @@ export function unwrittenTail(survey: Survey, atLeast: number): number {
 /** Snapshots of the record that the other checks judge: all but the unwritten end. */
 export function writtenCount(subject: CheckSubject): number {
   return subject.survey ? Math.max(0, snapshotCount(subject.survey) - (subject.unwritten ?? 0)) : 0;
+}
+
+/** Units of round-off within which two stamps say the same time: the sum of a few roundings. */
+const sameTimeUnits = 8;
+
+export function sameTime(survey: Survey, j: number, k: number): boolean {
+  const { stamps, stampType } = survey;
+  return stamps !== null && Math.abs(stamps[j] - stamps[k]) <= sameTimeUnits * roundOff(stampType) * Math.max(Math.abs(stamps[j]), Math.abs(stamps[k]));
 }
 
 /** Stamps of the written part, null for an ensemble or without time. */

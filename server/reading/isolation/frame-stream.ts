@@ -20,6 +20,7 @@ export class FrameStream {
   #frame: Frame | null = null;
   #body: Uint8Array = new Uint8Array(0);
   #bodyFilled = 0;
+  #spare: Float64Array | null = null;
 
   /** `onNonsense`: the pipe gave bytes that are no frame. */
   constructor(pipe: Readable, onNonsense: () => void) {
@@ -45,6 +46,11 @@ export class FrameStream {
     });
   }
 
+  /** Values that nobody needs any more: the next block of that length is written into them. */
+  giveBack(values: Float64Array): void {
+    this.#spare = values;
+  }
+
   /** No frame will come for `plan` (or for any): whoever waits gets `cause`. */
   fail(cause: unknown, plan?: number): void {
     for (const [waited, { reject }] of [...this.#waiting]) {
@@ -65,7 +71,9 @@ export class FrameStream {
         if (this.#headFilled < headerBytes) return true;
         const header = readHeader(this.#head);
         if (!header) return false;
-        this.#frame = { ...header, values: new Float64Array(header.count * header.nodes) };
+        const length = header.count * header.nodes;
+        this.#frame = { ...header, values: this.#spare?.length === length ? this.#spare : new Float64Array(length) };
+        this.#spare = null;
         this.#body = new Uint8Array(this.#frame.values.buffer);
         this.#bodyFilled = 0;
       }

@@ -30,6 +30,7 @@ describe('reading/incomplete', () => {
     ['one group a step', { layout: 'group-per-step', fields: [{ path: '/{step}/u', values: movingValues(5), axes: ['x'] }] }, none],
     ['components, which need no coordinates', { fields: [{ values: movingValues(5), axes: ['time', 'x', 'component'] }] }, none],
     ['a field that does not fit', { fields: [{ values: movingValues(3), axes: ['time', 'time'] }], mismatches: [{ path: '/u', expected: '', actual: '', message: 'twice' }] }, none],
+    ['no field because it is a link out of the archive', { fields: [], contents: { outsideLinks: [{ path: '/u', kind: 'external-link', target: 'o.h5:/u' }] } }, none],
     ['values at one point', { stamps: uniform(5), axes: [], fields: [{ values: movingValues(5, 1), axes: ['time'] }] }, none],
   ])('is silent for %s', (_name, plan, demands) => {
     expect(judge(readingIncomplete, makeSubject(plan, { demands }))).toEqual([]);

@@ -28,6 +28,7 @@ const table: [string, number[], number[], number[], number[], number[]][] = [
   ['the last two swapped', [0, 1, 2, 4, 3], [4], [], [], [0, 1, 2, 3, 4]],
   ['a stray copy of an early stamp', [0, 1, 2, 3, 1, 4, 5], [4], [], [4], [0, 1, 2, 3, 4, 5]],
   ['running backwards', [4, 3, 2, 1, 0], [1, 2, 3, 4], [], [], [0, 1, 2, 3, 4]],
+  ['two writers, one after the other', [0, 2, 4, 6, 8, 1, 3, 5, 7, 9], [5], [], [], [0, 1, 2, 3, 4, 5, 6, 7, 8, 9]],
   ['the earlier file last', [5, 6, 7, 0, 1, 2], [3], [], [], [0, 1, 2, 5, 6, 7]],
   ['a stamp that is no number', [0, 1, NaN, 3], [], [], [], [0, 1, 3]],
 ];
@@ -56,6 +57,19 @@ describe('describeOrder', () => {
 
   it('finds the stamps that are no numbers', () => {
     expect(order([NaN, 0, Infinity, 1]).undefinedStamps).toEqual([0, 2]);
+  });
+
+  it.each<[string, number[], number[], number[]]>([
+    ['a checkpoint time computed anew, one unit later', [0, 0.25, 0.5, 0.5 + 2 ** -53, 0.75], [3], []],
+    ['a checkpoint time computed anew, one unit earlier', [0, 0.25, 0.5, 0.5 - 2 ** -54, 0.75], [3], []],
+    ['stamps that the type can hardly tell apart', [1, 1 + 2 ** -52, 1 + 2 ** -51, 1 + 3 * 2 ** -52], [], []],
+    ['a first step far smaller than the others', [0, 1e-12, 0.1, 0.2], [], []],
+    ['a jump back by more than rounding', [0, 0.25, 0.5, 0.5 - 1e-6, 0.75], [], [3]],
+  ])('judges %s', (_name, stamps, nearlyEqual, restarts) => {
+    const found = describeOrder(Float64Array.from(stamps), 2 ** -53);
+    expect([found.nearlyEqual, found.duplicates]).toEqual([nearlyEqual, nearlyEqual]);
+    expect(found.restarts.map((restart) => restart.index)).toEqual(restarts);
+    expect(found.backward).toEqual([]);
   });
 
   it('keeps every snapshot of a shuffled record with distinct stamps', () => {

@@ -11,6 +11,12 @@ describe('time/duplicate', () => {
     expect(orderStep.parse({ step: found.remedy!.step, ...found.remedy!.parameters }).dropDuplicates).toBe(true);
   });
 
+  it('takes neighbours for equal that differ by rounding, and lists what to drop', () => {
+    const [found] = judge(timeDuplicate, makeSubject({ stamps: [0, 0.1, 0.3, 0.1 + 0.2, 0.4] }));
+    expect(found.evidence).toMatchObject({ indices: [3], count: 1 });
+    expect(found.remedy!.parameters.drop).toMatchObject([{ indices: [3] }]);
+  });
+
   it('says so when the snapshots differ at equal stamps, and not when they are copies', () => {
     const values = movingValues(4);
     const copies = judge(timeDuplicate, makeSubject({ stamps: [0, 1, 1, 2], fields: [{ values: [values[0], values[1], values[1], values[2]] }] }));
@@ -26,7 +32,7 @@ describe('time/duplicate', () => {
 
   it.each<[string, ArrayLike<number>]>([
     ['distinct stamps', uniform(30)],
-    ['stamps one unit in the last place apart', [1, 1 + Number.EPSILON, 2]],
+    ['stamps that are close, by more than rounding', [1, 1 + 1e-12, 2]],
     ['the overlap of a restart', [0, 1, 2, 3, 2, 3, 4]],
     ['float32 stamps of 1e5 s with 0.01 s steps', Float32Array.from(uniform(200, 0.01, 1e5))],
     ['several stamps that are no numbers', [0, NaN, NaN, 3]],
