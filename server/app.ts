@@ -1,7 +1,6 @@
 /** The Express application, without listening. */
 import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
-import { toNodeHandler } from 'better-auth/node';
 import express, { type Express } from 'express';
 import helmet from 'helmet';
 import { pinoHttp } from 'pino-http';
@@ -16,8 +15,10 @@ import { datasetRouter } from './http/routers/dataset.ts';
 import { deliveryRouter } from './http/routers/delivery.ts';
 import { operationRouter } from './http/routers/operation.ts';
 import { releaseRouter } from './http/routers/release.ts';
+import { signInRouter } from './http/sign-in.ts';
 import { uploadHandler } from './http/uploads.ts';
 import type { App } from './services/context.ts';
+import { recordSignIn } from './services/sign-in-audit.ts';
 
 /** The built pages lie in dist/web, beside dist/server or below the source tree. */
 function pagesFolder(): string | null {
@@ -30,7 +31,7 @@ function pagesFolder(): string | null {
 
 export function createApp(app: App): Express {
   const web = express();
-  const auth = createAuth(app);
+  const auth = createAuth({ ...app, record: (event, person, requestId) => recordSignIn(app, event, person, requestId) });
   const secure = app.config.url.startsWith('https://');
   web.disable('x-powered-by');
   web.set('trust proxy', 'loopback');
@@ -49,7 +50,7 @@ export function createApp(app: App): Express {
   web.use('/api', apiLimit());
   web.use(['/api/auth/sign-in', '/api/auth/request-password-reset', '/api/auth/reset-password'], signInLimit());
   web.use('/api/join', secretLimit());
-  web.all('/api/auth/{*any}', toNodeHandler(auth));
+  web.use(signInRouter(app, auth));
   web.use('/api', callers(app, auth), sameOrigin(app));
   web.all('/api/uploads{/*id}', uploadHandler(app));
   web.use('/api', express.json({ limit: '2mb' }));

@@ -2,13 +2,21 @@
 import type { IncomingHttpHeaders } from 'node:http';
 import { fromNodeHeaders } from 'better-auth/node';
 import { and, eq, isNull, lt, or, sql } from 'drizzle-orm';
-import { abilityFor, type Principal } from '#contract/access.ts';
+import { abilityFor, type AppAbility, type Principal } from '#contract/access.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { Database } from '../db/database.ts';
 import { roleAssignment, token, user } from '../db/schema/index.ts';
-import type { Caller } from '../services/context.ts';
 import type { Auth } from './auth.ts';
 import { hashOfSecret } from './secret-text.ts';
+
+/** Who calls, and what they may do at this moment. */
+export interface Caller {
+  user: { id: string; name: string; email: string };
+  principal: Principal;
+  ability: AppAbility;
+  via: 'session' | 'token' | 'job' | 'command-line' | 'set-up';
+  requestId: string | null;
+}
 
 type Found = { caller: Caller } | { problem: PennyweightError } | null;
 

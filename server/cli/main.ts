@@ -9,6 +9,7 @@ import { isWrongUsage } from './usage.ts';
 const commands: Record<string, () => Promise<{ command: Command }>> = {
   check: () => import('./commands/check.ts'),
   weights: () => import('./commands/weights.ts'),
+  audit: () => import('./commands/audit.ts'),
 };
 
 async function overview(): Promise<string> {

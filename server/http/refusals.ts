@@ -20,7 +20,7 @@ function translate(error: unknown): PennyweightError | null {
   if (error instanceof PennyweightError) return error;
   const { type, status } = (error ?? {}) as { type?: string; status?: number };
   if (type === 'entity.parse.failed') return new PennyweightError('invalid-input', 'The body is not valid JSON.');
-  if (type === 'entity.too.large') return new PennyweightError('file-too-large', 'The body is larger than 2 MiB: send archives by the upload route.');
+  if (type === 'entity.too.large') return new PennyweightError('file-too-large', 'The body of this request is too large: send archives by the upload route.');
   if (error instanceof URIError || status === 400) return new PennyweightError('invalid-input', 'The address is not valid.');
   if (error instanceof ZodError) return null;
   return null;

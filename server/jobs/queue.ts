@@ -17,13 +17,16 @@ export interface Queue {
   enqueue(tx: Queryable, work: NewJob): Promise<string>;
 }
 
+/** How often the queue hands a job out, also after the worker was killed; run-job.ts gives up earlier, with a reason. */
+const mostAttempts = 25;
+
 export function databaseQueue(): Queue {
   return {
     async enqueue(tx, work) {
       const [row] = await tx.insert(job).values(work).returning({ id: job.id });
       const id = row!.id;
       // One subject is worked on by one job at a time (queue name), tried again after a killed worker.
-      await tx.execute(sql`select graphile_worker.add_job(${work.kind}::text, json_build_object('jobId', ${id}::text), queue_name => ${work.subjectId}::text, max_attempts => 3)`);
+      await tx.execute(sql`select graphile_worker.add_job(${work.kind}::text, json_build_object('jobId', ${id}::text), queue_name => ${work.subjectId}::text, max_attempts => ${mostAttempts}::int, job_key => ${id}::text)`);
       return id;
     },
   };

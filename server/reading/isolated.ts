@@ -81,41 +81,26 @@ async function* snapshotBlocks(
   indices: Uint32Array,
   reuse: boolean,
 ): AsyncGenerator<SnapshotBlock, void, undefined> {
-  const { plan, windows, blocks } = await reader.request('plan', { reading, fields, indices }, requestMillis);
-  /** blocks that are asked for and have not come yet */
-  let due = 0;
-  let refused: PennyweightError | null = null;
-  function ask(window: number): void {
-    due += blocks[window];
-    reader.request('window', { plan, window }, requestMillis).catch((cause: PennyweightError) => {
-      // A window is read whole before its first block is sent: none of this one will come.
-      due -= blocks[window];
-      refused = cause;
-      reader.frames.fail(cause, plan);
-    });
-  }
+  const { plan, nodes, blocks, position } = await reader.request('plan', { reading, fields, indices }, requestMillis);
+  const ask = (block: number) => {
+    const asked = block < blocks ? reader.request('block', { plan, block }, requestMillis) : null;
+    // Whoever stops early never looks at it.
+    asked?.catch(() => undefined);
+    return asked;
+  };
   try {
-    if (windows > 0) ask(0);
-    for (let window = 0; window < windows; window++) {
-      for (let block = 0; block < blocks[window]; block++) {
-        if (refused) throw refused;
-        const { from, count, nodes, values } = await reader.frames.next(plan);
-        due--;
-        if (block === blocks[window] - 1 && window + 1 < windows) ask(window + 1);
-        yield { from, count, nodes, values };
-        if (reuse) reader.frames.giveBack(values);
-      }
+    let spare: Float64Array | null = null;
+    let asked = ask(0);
+    for (let block = 0; asked; block++) {
+      const { from, count } = await asked;
+      const values: Float64Array = spare?.length === count * nodes ? spare : new Float64Array(count * nodes);
+      reader.exchange.read(values, position);
+      asked = ask(block + 1);
+      yield { from, count, nodes, values };
+      if (reuse) spare = values;
     }
   } finally {
-    // Who stops early leaves blocks in the pipe; they are taken out so that the next request finds it empty.
-    try {
-      while (due > 0 && !refused) {
-        await reader.frames.next(plan);
-        due--;
-      }
-      await reader.request('forget', { plan }, requestMillis);
-    } catch {
-      // The reader is gone, and whoever asks next is told why.
-    }
+    // A reader that is gone has forgotten it already.
+    await reader.request('forget', { plan }, requestMillis).catch(() => undefined);
   }
 }

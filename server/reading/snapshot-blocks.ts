@@ -16,17 +16,19 @@ import { sizeOf } from './stored-array.ts';
 export interface SnapshotPlan {
   /** values of one snapshot: nodes of all asked fields */
   nodes: number;
-  /** snapshots of one block that is handed out */
-  blockLength: number;
-  /** first position in the indices of each window, and the end */
+  /** what is read at once: from one position in the indices to the next */
   windows: number[];
+  /** what is handed out at once, in the order of the indices */
+  blocks: { window: number; from: number; count: number }[];
   indices: ArrayLike<number>;
   columns: { source: FieldSource; from: number; order: Uint32Array | null }[];
   /** room for one window, used again by the next: touching new memory costs more than filling it */
   room: Float64Array;
+  /** the window that stands there, -1 for none */
+  held: number;
 }
 
-const blockBytes = 32 * 2 ** 20;
+const blockBytes = 24 * 2 ** 20;
 const windowBytes = 192 * 2 ** 20;
 const pieceBytes = 16 * 2 ** 20;
 
@@ -71,7 +73,13 @@ export function planSnapshots(archive: Archive, reading: Reading, names: string[
   const most = together ? fitting(windowBytes) : Math.min(fitting(windowBytes), Math.max(1, Math.floor(blockLength / timeStep)) * timeStep);
   const windows = windowsOf(indices, most, timeStep);
   const longest = windows.reduce((length, from, w) => Math.max(length, from - (windows[w - 1] ?? 0)), 0);
-  return { nodes, blockLength, windows, indices, columns, room: new Float64Array(longest * nodes) };
+  const blocks: SnapshotPlan['blocks'] = [];
+  for (let window = 0; window + 1 < windows.length; window++) {
+    for (let from = windows[window]; from < windows[window + 1]; from += blockLength) {
+      blocks.push({ window, from, count: Math.min(blockLength, windows[window + 1] - from) });
+    }
+  }
+  return { nodes, windows, blocks, indices, columns, room: new Float64Array(longest * nodes), held: -1 };
 }
 
 /** Windows of at most `most` snapshots; each ends where the next chunk begins, when one begins inside. */
@@ -90,11 +98,24 @@ function windowsOf(indices: ArrayLike<number>, most: number, timeStep: number): 
   return windows;
 }
 
-/** Values of window `w`: count x nodes, gone with the next call. */
-export function readWindow(plan: SnapshotPlan, w: number): { from: number; count: number; values: Float64Array } {
-  const from = plan.windows[w];
-  const count = plan.windows[w + 1] - from;
-  const values = plan.room.subarray(0, count * plan.nodes);
+/** Values of one block: count x nodes, gone with the next call. */
+export function readBlock(plan: SnapshotPlan, block: number): { from: number; count: number; values: Float64Array } {
+  const known = plan.blocks[block];
+  if (!known) throw new PennyweightError('range-invalid', `there is no block ${block} of snapshots: there are ${plan.blocks.length}.`, { block });
+  const { window, from, count } = known;
+  if (plan.held !== window) {
+    plan.held = -1;
+    readWindow(plan, window);
+    plan.held = window;
+  }
+  const at = (from - plan.windows[window]) * plan.nodes;
+  return { from, count, values: plan.room.subarray(at, at + count * plan.nodes) };
+}
+
+function readWindow(plan: SnapshotPlan, window: number): void {
+  const from = plan.windows[window];
+  const count = plan.windows[window + 1] - from;
+  const values = plan.room;
   const places = new Map<number, number[]>();
   for (let p = 0; p < count; p++) {
     const time = plan.indices[from + p];
@@ -117,7 +138,6 @@ export function readWindow(plan: SnapshotPlan, w: number): { from: number; count
       }
     }
   }
-  return { from, count, values };
 }
 
 /** Ascending times as stretches that are read in one go: neighbours, and those in one chunk. */

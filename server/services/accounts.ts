@@ -1,10 +1,10 @@
 /** Accounts: who I am, all accounts, organisation-wide roles, closing, and the making of an account (by invitation or set-up). */
 import { randomUUID } from 'node:crypto';
-import { hashPassword } from 'better-auth/crypto';
 import { asc, eq } from 'drizzle-orm';
 import { abilityFor, type MemberRole } from '#contract/access.ts';
 import type { Account, Me } from '#contract/account.ts';
 import { PennyweightError } from '#contract/error.ts';
+import { hashPassword } from '../access/password.ts';
 import type { Transaction } from '../db/database.ts';
 import { account, campaign, roleAssignment, session, user } from '../db/schema/index.ts';
 import { recordAudit } from './audit.ts';

@@ -1,8 +1,9 @@
 /** What every service function is given: the application's parts and who calls. */
 import type { Logger } from 'pino';
-import type { Action, AppAbility, Principal, Subject } from '#contract/access.ts';
+import type { Action, Subject } from '#contract/access.ts';
 import { about } from '#contract/access.ts';
 import { PennyweightError } from '#contract/error.ts';
+import type { Caller } from '../access/caller.ts';
 import type { Config } from '../config.ts';
 import type { Database } from '../db/database.ts';
 import type { Queue } from '../jobs/queue.ts';
@@ -25,13 +26,7 @@ export interface App {
 }
 
 /** Service functions are `(app: App, caller: Caller, input) => Promise<answer of the contract>`. */
-export interface Caller {
-  user: { id: string; name: string; email: string };
-  principal: Principal;
-  ability: AppAbility;
-  via: 'session' | 'token' | 'job' | 'command-line' | 'set-up';
-  requestId: string | null;
-}
+export type { Caller };
 
 /** Permission first: refuses with one sentence when the caller may not do that to this object. */
 export function authorise(caller: Caller, action: Action, subject: Subject, facts: Record<string, unknown>): void {

@@ -7,6 +7,7 @@ import type { Queryable } from '../db/database.ts';
 import { finding } from '../db/schema/index.ts';
 import { findArchive } from './archives.ts';
 import { recordAudit } from './audit.ts';
+import { canonicalJson } from './canonical-json.ts';
 import { authorise, mustSee, type App, type Caller } from './context.ts';
 import { peopleById } from './people.ts';
 
@@ -26,20 +27,20 @@ export async function listArchiveFindings(app: App, caller: Caller, archiveId: s
 }
 
 /**
- * Replaces the findings of an archive or draft. A waiver stays when the new finding says the very same thing at the same place: it was
- * given for that evidence and no other.
+ * Replaces the findings of an archive or draft. One that says the very same thing at the same place on the same evidence keeps its
+ * id and its waiver: the waiver was given for that evidence and no other.
  */
 export async function replaceFindings(tx: Queryable, owner: { archiveId: string } | { draftId: string }, campaignId: string, found: Finding[]): Promise<void> {
   const mine = 'archiveId' in owner ? eq(finding.archiveId, owner.archiveId) : eq(finding.draftId, owner.draftId);
-  const old = await tx.delete(finding).where(mine).returning();
-  const same = (row: FindingRow, each: Finding) => row.checkId === each.id && row.path === each.path && row.message === each.message;
+  const says = (each: { path: string | null; message: string; evidence: unknown }, check: string) => canonicalJson([check, each.path, each.message, each.evidence]);
+  const old = new Map((await tx.delete(finding).where(mine).returning()).map((row) => [says(row, row.checkId), row]));
   if (found.length === 0) return;
   await tx.insert(finding).values(found.map((each, position) => {
-    const waived = each.severity === 'caution' ? old.find((row) => row.waivedAt && same(row, each)) : undefined;
-    return {
-      ...owner, campaignId, checkId: each.id, severity: each.severity, path: each.path, message: each.message, evidence: each.evidence, remedy: each.remedy, position,
-      waivedReason: waived?.waivedReason ?? null, waivedBy: waived?.waivedBy ?? null, waivedAt: waived?.waivedAt ?? null,
-    };
+    const before = old.get(says(each, each.id));
+    old.delete(says(each, each.id));
+    const kept = before && { id: before.id, createdAt: before.createdAt };
+    const waived = before && each.severity === 'caution' ? { waivedReason: before.waivedReason, waivedBy: before.waivedBy, waivedAt: before.waivedAt } : {};
+    return { ...owner, ...kept, ...waived, campaignId, checkId: each.id, severity: each.severity, path: each.path, message: each.message, evidence: each.evidence, remedy: each.remedy, position };
   }));
 }
 

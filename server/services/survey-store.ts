@@ -19,6 +19,10 @@ export function readingHash(reading: Reading): string {
   return createHash('sha256').update(canonicalJson(reading)).digest('hex');
 }
 
+export function sameReading(one: Reading, other: Reading): boolean {
+  return canonicalJson(one) === canonicalJson(other);
+}
+
 /** Equal for grids that are equal to the last bit; null without a grid. */
 export function gridHash(survey: Survey): string | null {
   const axes = survey.axes.filter((axis) => axis.name !== 'component');

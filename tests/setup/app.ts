@@ -9,6 +9,7 @@ import { createServer, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import type { Logger } from 'pino';
 import supertest from 'supertest';
 import type { MemberRole, TokenScope } from '#contract/access.ts';
 import type { Message } from '../../server/mail/demo-inbox.ts';
@@ -94,17 +95,18 @@ function visitorAt(url: string, headers: Record<string, string>): Visitor {
   };
 }
 
-export async function createTestApp(options: { config?: Partial<Config> } = {}): Promise<TestApp> {
+export async function createTestApp(options: { config?: Partial<Config>; log?: Logger } = {}): Promise<TestApp> {
   const database = await createTestDatabase();
   const storage = await mkdtemp(join(tmpdir(), 'pennyweight-test-'));
   // The address must be known before the application is made: sign-in accepts its own origin only.
   const server = createServer().listen(0, '127.0.0.1');
   await once(server, 'listening');
   const url = `http://127.0.0.1:${(server.address() as AddressInfo).port}`;
-  const parts = await openParts({
+  const opened = await openParts({
     databaseUrl: database.url, storage, url, port: 0, host: '127.0.0.1', secret: randomBytes(32).toString('base64url'),
     demo: true, smtp: null, mailFrom: 'Pennyweight <pennyweight@localhost>', logLevel: 'silent', ...options.config,
   });
+  const parts = options.log ? { ...opened, log: options.log } : opened;
   const web = createApp(parts);
   server.on('request', (req, res) => void web(req, res));
 

@@ -1,24 +1,20 @@
 /** Health, desk, jobs, audit log, storage. */
 import { pipeline } from 'node:stream/promises';
 import { Readable } from 'node:stream';
-import { sql } from 'drizzle-orm';
 import { Router } from 'express';
 import { routes } from '#contract/routes.ts';
 import { auditCsv, listAudit } from '../../services/audit-log.ts';
 import { mayVerify, verifyChain } from '../../services/audit-chain.ts';
 import type { App } from '../../services/context.ts';
 import { describeDesk } from '../../services/desk.ts';
+import { describeHealth } from '../../services/health.ts';
 import { cancelJob, getJob, listJobs } from '../../services/jobs.ts';
 import { storageUsage } from '../../services/storage-usage.ts';
 import { mount } from '../mount.ts';
-import { version } from '../../version.ts';
 
 export function operationRouter(app: App): Router {
   const router = Router();
-  mount(router, app, routes.getHealth, async () => {
-    const database = await app.db.execute(sql`select 1`).then(() => true, () => false);
-    return { ok: database, version, database, demo: app.config.demo };
-  });
+  mount(router, app, routes.getHealth, () => describeHealth(app));
   mount(router, app, routes.getDesk, ({ caller }) => describeDesk(app, caller));
   mount(router, app, routes.listJobs, async ({ caller, query }) => ({ jobs: await listJobs(app, caller, query) }));
   mount(router, app, routes.getJob, ({ caller, params }) => getJob(app, caller, params.job));

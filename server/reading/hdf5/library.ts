@@ -1,5 +1,5 @@
 /**
- * The HDF5 library (h5wasm) with its doors shut: it can open the one file that it was given, and its own plugins; every
+ * The HDF5 library (h5wasm) with its doors shut: it can open the file that it was given, and its own plugins; every
  * other path is "no such file", so external links, virtual sources and external raw storage lead nowhere. Runs in the
  * reading process only. A call that fails leaks stack inside WebAssembly (measured: broken after some 2,000), so the
  * process gives up after `mostFailures`.
@@ -47,28 +47,38 @@ function unflagged(superblock: Superblock): Uint8Array | null {
   return bytes;
 }
 
-function shutDoors(fs: FileSystem, path: string, pluginFolder: () => string | null, superblock: Superblock): void {
+interface Doors {
+  /** the files that were given, each with the superblock that readers see instead of its own */
+  archives: Map<string, { position: number; patch: Uint8Array | null }>;
+  pluginFolder: string | null;
+}
+
+let doors: Doors | null = null;
+
+function shutDoors(fs: FileSystem): Doors {
   const { open, read, ErrnoError } = fs;
-  const archives = new Set<object>();
-  const patch = unflagged(superblock);
+  const shut: Doors = { archives: new Map(), pluginFolder: null };
+  const streams = new WeakMap<object, { position: number; patch: Uint8Array }>();
   fs.open = (wanted, flags, mode) => {
-    const folder = pluginFolder();
+    const archive = shut.archives.get(wanted);
+    const folder = shut.pluginFolder;
     const plugin = folder !== null && (wanted === folder || wanted.startsWith(`${folder}/`)) && !wanted.includes('..');
-    if (wanted !== path && !plugin) throw new ErrnoError(noSuchFile);
+    if (!archive && !plugin) throw new ErrnoError(noSuchFile);
     const stream = open.call(fs, wanted, flags, mode);
-    if (wanted === path) archives.add(stream);
+    if (archive?.patch) streams.set(stream, { position: archive.position, patch: archive.patch });
     return stream;
   };
-  if (!patch) return;
   fs.read = (stream, buffer, offset, length, position) => {
     const got = read.call(fs, stream, buffer, offset, length, position);
-    if (!archives.has(stream) || position === undefined) return got;
-    for (let i = 0; i < patch.length; i++) {
-      const at = superblock.position + i - position;
-      if (at >= 0 && at < got) buffer[offset + at] = patch[i];
+    const patched = streams.get(stream);
+    if (!patched || position === undefined) return got;
+    for (let i = 0; i < patched.patch.length; i++) {
+      const at = patched.position + i - position;
+      if (at >= 0 && at < got) buffer[offset + at] = patched.patch[i];
     }
     return got;
   };
+  return shut;
 }
 
 function refusal(file: FileBytes, superblock: Superblock): PennyweightError {
@@ -85,11 +95,12 @@ function refusal(file: FileBytes, superblock: Superblock): PennyweightError {
   });
 }
 
-/** Opens `path` for reading. One process opens one file: the doors stay shut for its whole life. */
+/** Opens `path` for reading, and lets the library open nothing else. */
 export async function openHdf5(path: string, file: FileBytes, superblock: Superblock): Promise<Hdf5Library> {
   const module = await ready;
-  let pluginFolder: string | null = null;
-  shutDoors(module.FS as unknown as FileSystem, path, () => pluginFolder, superblock);
+  doors ??= shutDoors(module.FS as unknown as FileSystem);
+  const { archives } = doors;
+  archives.set(path, { position: superblock.position, patch: unflagged(superblock) });
   let failures = 0;
 
   const library: Hdf5Library = {
@@ -111,9 +122,9 @@ export async function openHdf5(path: string, file: FileBytes, superblock: Superb
       }
     },
     loadPlugins() {
-      if (pluginFolder !== null) return;
-      pluginFolder = join(dirname(createRequire(import.meta.url).resolve('h5wasm-plugins/package.json')), 'plugins');
-      module.insert_plugin_search_path(pluginFolder, 0);
+      if (!doors || doors.pluginFolder !== null) return;
+      doors.pluginFolder = join(dirname(createRequire(import.meta.url).resolve('h5wasm-plugins/package.json')), 'plugins');
+      module.insert_plugin_search_path(doors.pluginFolder, 0);
     },
   };
   library.fileId = library.attempt(() => module.open(path, module.H5F_ACC_RDONLY, false, -1, -1)) ?? -1n;

@@ -2,13 +2,12 @@
  * The reading process: the only place where bytes from outside are parsed. It is forked by reading-process.ts with an
  * empty environment, answers one request after another, and is killed without regret.
  */
-import { Socket } from 'node:net';
+import { writeSync } from 'node:fs';
 import { setImmediate as breathe } from 'node:timers/promises';
 import { PennyweightError } from '#contract/error.ts';
-import { writeHeader, type FrameHeader } from './frame.ts';
 import { operations, type Surroundings } from './operations.ts';
 import { endWithParent } from './orphan-watch.ts';
-import { frameDescriptor, type Reply, type Request } from './protocol.ts';
+import { exchangeDescriptor, type Reply, type Request } from './protocol.ts';
 
 const handlers = operations();
 let work: Promise<void> = Promise.resolve();
@@ -17,21 +16,14 @@ function reply(message: Reply): void {
   process.send?.(message);
 }
 
-const pipe = new Socket({ fd: frameDescriptor, readable: false });
-
-/** Done when the other side has taken the bytes, but for what the pipe itself holds. */
-function write(bytes: Uint8Array): Promise<void> {
-  return new Promise((resolve, reject) => pipe.write(bytes, (cause) => (cause ? reject(cause) : resolve())));
-}
-
-async function sendFrame(header: FrameHeader, values: Float64Array): Promise<void> {
-  await write(writeHeader(header));
-  await write(new Uint8Array(values.buffer, values.byteOffset, values.byteLength));
+function writeBlock(values: Float64Array, position: number): void {
+  const bytes = new Uint8Array(values.buffer, values.byteOffset, values.byteLength);
+  for (let at = 0; at < bytes.length; ) at += writeSync(exchangeDescriptor, bytes, at, bytes.length - at, position + at);
 }
 
 async function answer({ id, operation, take }: Request): Promise<void> {
   const around: Surroundings = {
-    sendFrame,
+    writeBlock,
     async report(done, total, path) {
       reply({ id, kind: 'progress', done, total, path });
       await breathe();

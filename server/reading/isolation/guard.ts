@@ -6,8 +6,6 @@ import { readFileSync } from 'node:fs';
 
 export interface Deadline {
   millis: number;
-  /** time that does not count, while the reader waits for us */
-  paused(): boolean;
   expire(): void;
 }
 
@@ -56,7 +54,7 @@ export class Guard {
   #countTime(): void {
     const now = performance.now();
     // A sleeping laptop or a busy event loop is not the reader's time: no tick counts for more than a second.
-    if (this.#deadline && !this.#deadline.paused()) this.#spent += Math.min(1000, now - this.#last);
+    if (this.#deadline) this.#spent += Math.min(1000, now - this.#last);
     this.#last = now;
     if (this.#deadline && this.#spent > this.#deadline.millis) {
       const { expire } = this.#deadline;

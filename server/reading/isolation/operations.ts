@@ -8,29 +8,32 @@ import { adapt } from '../proposal/adapt.ts';
 import { evidenceOf } from '../proposal/evidence.ts';
 import { propose } from '../proposal/propose.ts';
 import { readVectors } from '../reading-vectors.ts';
-import { planSnapshots, readWindow, type SnapshotPlan } from '../snapshot-blocks.ts';
+import { planSnapshots, readBlock, type SnapshotPlan } from '../snapshot-blocks.ts';
 import { surveyArchive } from '../survey/survey-archive.ts';
-import type { FrameHeader } from './frame.ts';
 import type { OperationName, Operations } from './protocol.ts';
 
 export interface Surroundings {
   report(done: number, total: number, path: string): Promise<void>;
-  sendFrame(header: FrameHeader, values: Float64Array): Promise<void>;
+  /** Puts values into the exchange file. */
+  writeBlock(values: Float64Array, position: number): void;
 }
 
 type Handlers = { [Name in OperationName]: (take: Operations[Name]['take'], around: Surroundings) => Operations[Name]['answer'] | Promise<Operations[Name]['answer']> };
 
+/** Room for one block of each plan; the file is sparse, so what is not used costs nothing. */
+const slotBytes = 2 ** 31;
+
 export function operations(): Handlers {
   let archive: Archive | null = null;
   let limits: Limits = defaultLimits;
-  const plans = new Map<number, SnapshotPlan>();
+  const plans = new Map<number, { plan: SnapshotPlan; slot: number }>();
   let planCount = 0;
 
   function opened(): Archive {
     if (!archive) throw new PennyweightError('wrong-state', 'no archive is open in the reading process; open one first.');
     return archive;
   }
-  function planOf(id: number): SnapshotPlan {
+  function planOf(id: number): { plan: SnapshotPlan; slot: number } {
     const plan = plans.get(id);
     if (!plan) throw new PennyweightError('wrong-state', 'the snapshots of this request were given up already; ask again.');
     return plan;
@@ -54,20 +57,17 @@ export function operations(): Handlers {
     survey: ({ reading }, { report }) => surveyArchive(opened(), reading, limits, report),
     plan({ reading, fields, indices }) {
       const plan = planSnapshots(opened(), reading, fields, indices, limits);
+      let slot = 0;
+      while ([...plans.values()].some((other) => other.slot === slot)) slot++;
       const id = ++planCount;
-      plans.set(id, plan);
-      const windows = plan.windows.length - 1;
-      const blocks = Array.from({ length: windows }, (_, w) => Math.ceil((plan.windows[w + 1] - plan.windows[w]) / plan.blockLength));
-      return { plan: id, nodes: plan.nodes, windows, blocks };
+      plans.set(id, { plan, slot });
+      return { plan: id, nodes: plan.nodes, blocks: plan.blocks.length, position: slot * slotBytes };
     },
-    async window({ plan: id, window }, { sendFrame }) {
-      const plan = planOf(id);
-      const { from, count, values } = readWindow(plan, window);
-      for (let at = 0; at < count; at += plan.blockLength) {
-        const many = Math.min(plan.blockLength, count - at);
-        await sendFrame({ plan: id, from: from + at, count: many, nodes: plan.nodes }, values.subarray(at * plan.nodes, (at + many) * plan.nodes));
-      }
-      return null;
+    block({ plan: id, block }, { writeBlock }) {
+      const { plan, slot } = planOf(id);
+      const { from, count, values } = readBlock(plan, block);
+      writeBlock(values, slot * slotBytes);
+      return { from, count };
     },
     forget({ plan }) {
       plans.delete(plan);

@@ -1,6 +1,6 @@
 /**
  * What the server's process and the reading process say to each other: requests and answers by the channel of
- * child_process.fork, blocks of snapshots as frames through a pipe of their own.
+ * child_process.fork, blocks of snapshots through a file that both have open (exchange-file.ts).
  */
 import type { ErrorCode, ErrorDetails } from '#contract/error.ts';
 import type { ArchiveContents, Reading } from '#contract/reading.ts';
@@ -18,8 +18,10 @@ export interface Operations {
   vectors: { take: { reading: Reading }; answer: ReadingVectors };
   vector: { take: { path: string }; answer: Float64Array };
   survey: { take: { reading: Reading }; answer: Survey };
-  plan: { take: { reading: Reading; fields: string[]; indices: Uint32Array }; answer: { plan: number; nodes: number; windows: number; blocks: number[] } };
-  window: { take: { plan: number; window: number }; answer: null };
+  /** `position`: where the blocks of this plan are put in the exchange file */
+  plan: { take: { reading: Reading; fields: string[]; indices: Uint32Array }; answer: { plan: number; nodes: number; blocks: number; position: number } };
+  /** puts one block into the exchange file */
+  block: { take: { plan: number; block: number }; answer: { from: number; count: number } };
   forget: { take: { plan: number }; answer: null };
 }
 export type OperationName = keyof Operations;
@@ -31,5 +33,5 @@ export type Reply =
   | { id: number; kind: 'refusal'; code: ErrorCode; message: string; details: ErrorDetails }
   | { id: number; kind: 'progress'; done: number; total: number; path: string };
 
-/** File descriptor of the frames in the reading process; 3 is the channel. */
-export const frameDescriptor = 4;
+/** Descriptor of the exchange file in the reading process; 3 is the channel. */
+export const exchangeDescriptor = 4;

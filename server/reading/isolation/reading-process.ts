@@ -5,20 +5,18 @@
 import { fork, type ChildProcess } from 'node:child_process';
 import { createRequire } from 'node:module';
 import { extname } from 'node:path';
-import type { Readable } from 'node:stream';
 import { fileURLToPath, pathToFileURL } from 'node:url';
 import { PennyweightError } from '#contract/error.ts';
 import type { Limits } from '../limits.ts';
-import { FrameStream } from './frame-stream.ts';
+import { ExchangeFile } from './exchange-file.ts';
 import { Guard } from './guard.ts';
-import { frameDescriptor, type OperationName, type Operations, type Reply, type Request } from './protocol.ts';
+import { type OperationName, type Operations, type Reply, type Request } from './protocol.ts';
 
 /** JavaScript objects of the reader: contents of a hundred thousand arrays; data are outside of this heap. */
 const heapMegabytes = 320;
 const mostOutput = 4096;
 
 interface Waiter {
-  operation: OperationName;
   millis: number;
   resolve: (answer: unknown) => void;
   reject: (cause: unknown) => void;
@@ -26,7 +24,7 @@ interface Waiter {
 }
 
 /** Runs from source (.ts) and compiled (.js) alike. */
-function startChild(): ChildProcess {
+function startChild(exchange: ExchangeFile): ChildProcess {
   const extension = extname(fileURLToPath(import.meta.url));
   const entry = fileURLToPath(new URL(`./child${extension}`, import.meta.url));
   const loaders =
@@ -38,12 +36,12 @@ function startChild(): ChildProcess {
     // Nothing of the server's environment: no secret, no option for Node.js.
     env: {},
     serialization: 'advanced',
-    stdio: ['ignore', 'pipe', 'pipe', 'ipc', 'pipe'],
+    stdio: ['ignore', 'pipe', 'pipe', 'ipc', exchange.descriptor],
   });
 }
 
 export class ReadingProcess {
-  readonly frames: FrameStream;
+  readonly exchange = new ExchangeFile();
   readonly #child: ChildProcess;
   readonly #guard: Guard;
   readonly #waiting = new Map<number, Waiter>();
@@ -57,14 +55,13 @@ export class ReadingProcess {
   /** `name`: what to call the archive in an error. */
   constructor(name: string, limits: Limits) {
     this.#name = name;
-    this.#child = startChild();
+    this.#child = startChild(this.exchange);
     const { pid } = this.#child;
     this.#guard = new Guard(pid ?? 0, limits.memoryBytes, (bytes) =>
       this.#end(
         this.#death(`needed ${Math.ceil(bytes / 1e6)} MB of memory, and ${Math.ceil(limits.memoryBytes / 1e6)} MB is the limit`, { memoryBytes: bytes }),
       ),
     );
-    this.frames = new FrameStream(this.#child.stdio[frameDescriptor] as Readable, () => this.#end(this.#death('gave bytes that are no block of snapshots', {})));
     for (const stream of [this.#child.stdout, this.#child.stderr]) {
       stream?.on('data', (bytes: Buffer) => (this.#output = (this.#output + bytes.toString('latin1')).slice(-mostOutput)));
     }
@@ -93,7 +90,7 @@ export class ReadingProcess {
     if (this.#reason) return Promise.reject(this.#reason);
     const id = ++this.#count;
     return new Promise((resolve, reject) => {
-      this.#waiting.set(id, { operation, millis, resolve: resolve as (answer: unknown) => void, reject, onProgress });
+      this.#waiting.set(id, { millis, resolve: resolve as (answer: unknown) => void, reject, onProgress });
       if (this.#waiting.size === 1) this.#startClock();
       this.#child.send({ id, operation, take } as Request);
     });
@@ -102,6 +99,7 @@ export class ReadingProcess {
   async close(): Promise<void> {
     this.#end(new PennyweightError('wrong-state', `${this.#name} was closed; open it again.`, {}));
     await this.#ended;
+    this.exchange.close();
   }
 
   /** The reader answers in turn, so the clock is that of the oldest request. */
@@ -113,7 +111,6 @@ export class ReadingProcess {
     }
     this.#guard.start({
       millis: oldest.millis,
-      paused: () => oldest.operation === 'window' && this.frames.held,
       expire: () => this.#end(this.#death(`took longer than ${oldest.millis / 1000} s`, { millis: oldest.millis })),
     });
   }
@@ -156,6 +153,5 @@ export class ReadingProcess {
     this.#child.kill('SIGKILL');
     for (const { reject } of this.#waiting.values()) reject(reason);
     this.#waiting.clear();
-    this.frames.fail(reason);
   }
 }

@@ -82,8 +82,11 @@ export function visitExtensibleArray(file: StructureFile, header: number, visit:
     for (let block = 0; block < blocks; block++, first += elements) {
       const at = superBlock.address();
       if (at === null || first >= used) continue;
-      const bitmap = bitmaps.subarray(block * bitmapBytes, (block + 1) * bitmapBytes);
-      visitDataBlock(at, first, elements, (page) => (bitmap[page >> 3] & (0x80 >> (page & 7))) !== 0);
+      // The bits of all data blocks follow each other without gap, though the room is that of whole bytes a block.
+      visitDataBlock(at, first, elements, (page) => {
+        const bit = block * pages + page;
+        return (bitmaps[bit >> 3] & (0x80 >> (bit & 7))) !== 0;
+      });
     }
   }
 }

@@ -1,0 +1,1 @@
+ALTER TABLE "survey" ADD COLUMN "grid_hash" text;

@@ -1,0 +1,131 @@
+/**
+ * Builds a draft's matrix: streams the kept snapshots out of each source, centres, casts, weighs, and writes arrays that are the same
+ * bytes for the same sources and recipe. Everything is made in a scratch folder; publishing it and one transaction make it visible.
+ */
+import { randomUUID } from 'node:crypto';
+import { rm, writeFile } from 'node:fs/promises';
+import { join } from 'node:path';
+import { PennyweightError } from '#contract/error.ts';
+import { mustPlan, rowsOf } from '../engine/recipe/plan.ts';
+import { recordRanges, type RecordState } from '../engine/recipe/record-state.ts';
+import { coefficientsOf, modesOf, weightedSpectrum } from '../engine/spectrum/spectrum.ts';
+import { npyFile } from '../engine/release/npy.ts';
+import { linearAlgebra } from '../linalg/choose.ts';
+import type { App } from '../services/context.ts';
+import { archivesOf, recipeSources } from '../services/draft-sources.ts';
+import { draftForBuild, finishBuild } from '../services/draft-builds.ts';
+import { openArchiveFiles } from '../services/reading-pool.ts';
+import { MatrixReader, MatrixWriter } from '../storage/matrix-file.ts';
+import { buildFiles, summarise } from '../engine/release/build-files.ts';
+import type { JobHandle } from './handle.ts';
+
+const modesKept = 20;
+
+export async function build(app: App, job: JobHandle): Promise<void> {
+  const { draft, recipe } = await draftForBuild(app, job.subjectId);
+  const sources = await recipeSources(app, draft.campaignId, recipe);
+  if (archivesOf(recipe).length !== sources.length) throw new PennyweightError('recipe-invalid', 'An archive of the recipe is withdrawn or not read: choose others.', {});
+  const plan = mustPlan(recipe, sources);
+  const scratch = await app.storage.scratchFolder(`build-${job.id}`);
+  try {
+    const raw = join(scratch, 'raw.npy');
+    const mean = await gather(app, job, plan, raw);
+    const matrix = await centreAndCast(job, plan, raw, mean, join(scratch, 'matrix.npy'));
+    await rm(raw);
+    const reader = await MatrixReader.open(join(scratch, 'matrix.npy'), shapeOf(plan));
+    try {
+      report(job, plan, 2, 'spectrum');
+      const algebra = await linearAlgebra();
+      const single = plan.type === 'float32' || plan.sources.some(({ survey }) => survey.fields.some((field) => field.dtype === 'float32' && plan.fields.some((each) => each.name === field.name)));
+      const decomposition = await weightedSpectrum(reader, plan.timeWeights!, plan.spaceWeights!, algebra, single ? 2 ** -23 : Number.EPSILON);
+      job.signal.throwIfAborted();
+      const count = Math.min(modesKept, decomposition.result.resolved);
+      const modes = new Float64Array(rowsOf(plan) * count);
+      for await (const tile of modesOf(reader, plan.timeWeights!, decomposition, count, algebra)) {
+        job.signal.throwIfAborted();
+        for (let k = 0; k < count; k++) modes.set(tile.values.subarray(k * tile.rows, (k + 1) * tile.rows), k * rowsOf(plan) + tile.from);
+      }
+      const coefficients = coefficientsOf(decomposition, plan.timeWeights!, count);
+      await writeFile(join(scratch, 'modes.npy'), npyFile(modes, [rowsOf(plan), count], true));
+      await writeFile(join(scratch, 'coefficients.npy'), npyFile(coefficients, [count, plan.columns.length]));
+      const summary = summarise(plan, matrix, decomposition, count);
+      for (const [name, content] of buildFiles(plan, mean, decomposition)) await writeFile(join(scratch, name), content);
+      job.signal.throwIfAborted();
+      const folder = `${draft.id}-${randomUUID().slice(0, 8)}`;
+      await app.storage.publish(scratch, 'builds', folder);
+      await finishBuild(app, job.caller, draft.id, { recipeHash: draft.recipeHash, summary, folder, jobId: job.id });
+    } finally {
+      await reader.close();
+    }
+  } finally {
+    await app.storage.discard(scratch);
+  }
+}
+
+const shapeOf = (plan: RecordState) => ({ rows: rowsOf(plan), columns: plan.columns.length, type: plan.type });
+
+/** Progress counts the matrix three times: gathered, centred, decomposed. */
+function report(job: JobHandle, plan: RecordState, round: number, phase: string, columns = 0): void {
+  const bytes = 8 * rowsOf(plan);
+  job.report({ done: bytes * (round * plan.columns.length + columns), total: 3 * bytes * plan.columns.length, unit: 'bytes', phase });
+}
+
+/** Streams all columns into `path` in double precision; returns what is to be subtracted: n values, or n x runs, or null. */
+async function gather(app: App, job: JobHandle, plan: RecordState, path: string): Promise<Float64Array | null> {
+  const rows = rowsOf(plan), names = plan.fields.map((field) => field.name), ranges = recordRanges(plan);
+  const perRun = plan.centre === 'weighted-mean-per-run';
+  const mean = plan.centre === 'nothing' ? null : new Float64Array(rows * (perRun ? ranges.length : 1));
+  const totals = ranges.map(({ from, to }) => plan.timeWeights!.subarray(from, to).reduce((a, b) => a + b, 0));
+  const total = totals.reduce((a, b) => a + b, 0);
+  const writer = await MatrixWriter.create(path, { rows, columns: plan.columns.length, type: 'float64' });
+  try {
+    for (const [r, { source, from, to }] of ranges.entries()) {
+      const archive = await openArchiveFiles(app, plan.sources[source].archive);
+      try {
+        const indices = plan.columns.slice(from, to).map((column) => column.index);
+        for await (const block of archive.snapshots(plan.sources[source].survey.reading, names, indices)) {
+          job.signal.throwIfAborted();
+          if (mean && plan.centre !== 'first-snapshot') {
+            const into = perRun ? mean.subarray(r * rows, (r + 1) * rows) : mean;
+            for (let j = 0; j < block.count; j++) {
+              const share = plan.timeWeights![from + block.from + j] / (perRun ? totals[r] : total);
+              for (let i = 0; i < rows; i++) into[i] += share * block.values[j * rows + i];
+            }
+          } else if (mean && from === 0 && block.from === 0) mean.set(block.values.subarray(0, rows));
+          await writer.append(block.values);
+          report(job, plan, 0, `reading run ${plan.sources[source].run}`, from + block.from + block.count);
+        }
+      } finally {
+        await archive.close();
+      }
+    }
+    await writer.close();
+  } catch (cause) {
+    await writer.abandon();
+    throw cause;
+  }
+  return mean;
+}
+
+async function centreAndCast(job: JobHandle, plan: RecordState, raw: string, mean: Float64Array | null, path: string): Promise<{ sha256: string; bytes: number; castError: number }> {
+  const rows = rowsOf(plan), ranges = recordRanges(plan), perRun = plan.centre === 'weighted-mean-per-run';
+  const reader = await MatrixReader.open(raw, { rows, columns: plan.columns.length, type: 'float64' });
+  const writer = await MatrixWriter.create(path, shapeOf(plan));
+  try {
+    for await (const { first, columns, values } of reader.columnBlocks()) {
+      job.signal.throwIfAborted();
+      for (let j = 0; mean && j < columns; j++) {
+        const offset = perRun ? ranges.findIndex(({ from, to }) => first + j >= from && first + j < to) * rows : 0;
+        for (let i = 0; i < rows; i++) values[j * rows + i] -= mean[offset + i];
+      }
+      await writer.append(values);
+      report(job, plan, 1, 'centring and writing', first + columns);
+    }
+    return { ...(await writer.close()), castError: writer.castError };
+  } catch (cause) {
+    await writer.abandon();
+    throw cause;
+  } finally {
+    await reader.close();
+  }
+}

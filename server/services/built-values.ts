@@ -1,0 +1,72 @@
+/** Columns, modes and the mean of a built matrix, put back on their grid for the field view; and its beam. */
+import { open, readFile } from 'node:fs/promises';
+import { join } from 'node:path';
+import type { BuildSummary } from '#contract/dataset.ts';
+import { PennyweightError } from '#contract/error.ts';
+import type { SplitPart } from '#contract/recipe.ts';
+import type { Beam, FieldValues } from '#contract/shape.ts';
+import { splitCodes } from '../engine/release/build-files.ts';
+import { npyHeader } from '../engine/release/npy.ts';
+import { marksOf } from './archive-record.ts';
+import { fieldValues } from './field-values.ts';
+import { MatrixReader } from '../storage/matrix-file.ts';
+
+interface FieldsFile {
+  fields: { name: string; unit: string | null; axes: { name: string; unit: string | null; count: number; nodes: number[] | null }[] }[];
+}
+
+/** A small NPY of our own making: the data after its header. */
+async function smallArray(path: string): Promise<Buffer> {
+  const file = await readFile(path);
+  return file.subarray(10 + file.readUInt16LE(8));
+}
+
+const doubles = async (path: string) => {
+  const bytes = await smallArray(path);
+  return new Float64Array(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength));
+};
+
+export async function builtBeam(folder: string, build: BuildSummary, unit: string | null): Promise<Beam> {
+  const stamps = await doubles(join(folder, 'time.npy')), weights = await doubles(join(folder, 'time_weights.npy'));
+  const codes = new Int8Array(await smallArray(join(folder, 'split.npy')));
+  const names = Object.fromEntries(Object.entries(splitCodes).map(([part, code]) => [code, part])) as Record<number, SplitPart>;
+  const timed = stamps.every(Number.isFinite);
+  const gaps = timed ? build.records.flatMap(({ from, count }) => marksOf(stamps.slice(from, from + count)).gaps.map((j) => j + from)) : [];
+  return {
+    stamps: timed ? Array.from(stamps) : null, count: stamps.length, unit, weights: Array.from(weights), rule: build.timeRule, marks: { gaps, duplicates: [], restarts: [] },
+    split: Array.from(codes, (code) => names[code]), records: build.records.map(({ run, from, count }) => ({ label: run, from, count })),
+  };
+}
+
+export async function builtValues(folder: string, build: BuildSummary, asked: { of: 'column' | 'mode' | 'mean'; index: number; field: string }): Promise<FieldValues> {
+  const field = build.fields.find((each) => each.name === asked.field);
+  if (!field) throw new PennyweightError('not-found', `The matrix has no field "${asked.field}": it has ${build.fields.map((each) => each.name).join(', ')}.`, { field: asked.field });
+  const perRun = build.centred === 'weighted-mean-per-run';
+  const count = asked.of === 'column' ? build.columns : asked.of === 'mode' ? build.modes : perRun ? build.records.length : 1;
+  if (asked.index >= count) throw new PennyweightError('range-invalid', `${asked.of} ${asked.index} is outside: there ${count === 1 ? 'is 1' : `are ${count}`}, numbered from 0.`, { index: asked.index, count });
+  let values: Float64Array, time: number | null = null;
+  if (asked.of === 'column') {
+    const reader = await MatrixReader.open(join(folder, 'matrix.npy'), build);
+    try {
+      values = await reader.block(asked.index, 1, field.from, field.count);
+    } finally {
+      await reader.close();
+    }
+    const stamp = (await doubles(join(folder, 'time.npy')))[asked.index];
+    time = Number.isFinite(stamp) ? stamp : null;
+  } else {
+    const columns = asked.of === 'mode' ? build.modes : count;
+    const start = npyHeader('float64', asked.of === 'mean' && !perRun ? [build.rows] : [build.rows, columns], asked.of === 'mode' || perRun).length;
+    const handle = await open(join(folder, asked.of === 'mode' ? 'modes.npy' : 'mean.npy'), 'r');
+    try {
+      const bytes = new Uint8Array(field.count * 8);
+      await handle.read(bytes, 0, bytes.length, start + (asked.index * build.rows + field.from) * 8);
+      values = new Float64Array(bytes.buffer);
+    } finally {
+      await handle.close();
+    }
+  }
+  const grid = (JSON.parse(await readFile(join(folder, 'fields.json'), 'utf8')) as FieldsFile).fields.find((each) => each.name === asked.field)!;
+  const label = asked.of === 'mean' ? `what was subtracted, ${asked.field}` : `${asked.of} ${asked.of === 'mode' ? asked.index + 1 : asked.index}, ${asked.field}`;
+  return fieldValues(values, grid.axes.map((axis) => ({ ...axis, nodes: axis.nodes ? Float64Array.from(axis.nodes) : null })), { label, field: asked.field, unit: asked.of === 'mode' ? null : field.unit, time, index: asked.index, count });
+}

@@ -1,0 +1,108 @@
+/** Drafts: begun from a recipe, changed, shown with sources and history. */
+import { and, asc, eq, inArray, sql } from 'drizzle-orm';
+import type { Draft } from '#contract/dataset.ts';
+import { PennyweightError } from '#contract/error.ts';
+import type { Recipe } from '#contract/recipe.ts';
+import { readRecipe } from '../engine/recipe/plan.ts';
+import type { Queryable } from '../db/database.ts';
+import { archive, archiveFile, auditLog, dataset, draft, run } from '../db/schema/index.ts';
+import { findingCounts } from './archives.ts';
+import { recordAudit } from './audit.ts';
+import { authorise, mustSee, type App, type Caller } from './context.ts';
+import { findDataset } from './datasets.ts';
+import type { DraftRow } from './draft-builds.ts';
+import { archivesOf, makersOf } from './draft-sources.ts';
+import { draftSummaries } from './draft-summaries.ts';
+import { peopleById } from './people.ts';
+import { recipeHash } from './recipe-hash.ts';
+
+export async function findDraft(app: App, caller: Caller, id: string): Promise<DraftRow> {
+  const [row] = await app.db.select().from(draft).where(eq(draft.id, id));
+  if (!row) throw new PennyweightError('not-found', 'There is no such draft, or you are not a member of its campaign.');
+  mustSee(caller, 'Draft', row, 'draft');
+  return row;
+}
+
+/** What a person calls it: 'Plume temperature, draft 2'. */
+export async function draftLabel(tx: Queryable, row: DraftRow): Promise<string> {
+  const [parent] = await tx.select({ title: dataset.title }).from(dataset).where(eq(dataset.id, row.datasetId));
+  return `${parent.title}, draft ${row.number}`;
+}
+
+export function mustBeEditable(row: DraftRow): void {
+  if (row.state !== 'draft' && row.state !== 'returned') throw new PennyweightError('wrong-state', `This draft is ${row.state}: only a draft, or one that was returned, can be changed.`, { state: row.state });
+}
+
+const events: Record<string, string> = { 'draft.begin': 'began the draft', 'draft.recipe': 'changed the recipe', 'draft.build': 'built the matrix', 'draft.submit': 'submitted it for review', 'draft.return': 'returned it', 'draft.approve': 'approved it', 'release.make': 'the release was made' };
+
+export async function describeDraft(app: App, row: DraftRow): Promise<Draft> {
+  const [summary] = await draftSummaries(app, [row]);
+  const ids = archivesOf(row.recipe);
+  const archives = ids.length === 0 ? [] : await app.db.select({ id: archive.id, name: archive.name, state: archive.state, by: archive.createdBy, run: run.name, sha256: archiveFile.sha256 }).from(archive).innerJoin(run, eq(run.id, archive.runId)).innerJoin(archiveFile, and(eq(archiveFile.archiveId, archive.id), eq(archiveFile.position, 0))).where(and(inArray(archive.id, ids), eq(archive.campaignId, row.campaignId)));
+  const log = await app.db.select().from(auditLog).where(and(eq(auditLog.objectType, 'draft'), eq(auditLog.objectId, row.id))).orderBy(asc(auditLog.seq));
+  const counts = await findingCounts(app.db, 'archive', ids);
+  const person = await peopleById(app.db, [...row.makers, ...archives.map((each) => each.by)]);
+  return {
+    ...summary, recipe: row.recipe, version: row.version, stale: row.build !== null && row.buildHash !== row.recipeHash, build: row.build, jobId: row.jobId, makers: row.makers.map(person),
+    history: log.map((entry) => ({ at: entry.at.toISOString(), by: { id: entry.actorId ?? '', name: entry.actorName }, what: events[entry.action] ?? entry.action, reason: entry.reason })),
+    sources: ids.flatMap((id) => {
+      const found = archives.find((each) => each.id === id);
+      return found ? [{ archive: id, run: found.run, name: found.name, sha256: found.sha256, state: found.state, handedInBy: person(found.by), findings: counts(id) }] : [];
+    }),
+  };
+}
+
+export async function getDraft(app: App, caller: Caller, id: string): Promise<Draft> {
+  return describeDraft(app, await findDraft(app, caller, id));
+}
+
+export async function createDraft(app: App, caller: Caller, campaignSlug: string, slug: string, given: Recipe): Promise<Draft> {
+  const { row: parent } = await findDataset(app, caller, campaignSlug, slug);
+  authorise(caller, 'create', 'Draft', { campaignId: parent.campaignId });
+  const recipe = readRecipe(given), makers = await makersOf(app, recipe, caller.user.id);
+  await mustBelong(app, parent.campaignId, recipe);
+  const made = await app.db.transaction(async (tx) => {
+    await tx.select({ id: dataset.id }).from(dataset).where(eq(dataset.id, parent.id)).for('update');
+    const [{ next }] = await tx.select({ next: sql<number>`coalesce(max(${draft.number}), 0)::int + 1` }).from(draft).where(eq(draft.datasetId, parent.id));
+    const [row] = await tx.insert(draft).values({ datasetId: parent.id, campaignId: parent.campaignId, number: next, recipe, recipeHash: recipeHash(recipe), makers, createdBy: caller.user.id }).returning();
+    await recordAudit(tx, caller, { action: 'draft.begin', objectType: 'draft', objectId: row.id, label: `${parent.title}, draft ${next}`, campaignId: parent.campaignId, after: { recipe } });
+    return row;
+  });
+  return describeDraft(app, made);
+}
+
+/** An archive of another campaign is not there for this one. */
+async function mustBelong(app: App, campaignId: string, recipe: Recipe): Promise<void> {
+  const ids = archivesOf(recipe);
+  const rows = ids.length === 0 ? [] : await app.db.select({ id: archive.id }).from(archive).where(and(inArray(archive.id, ids), eq(archive.campaignId, campaignId)));
+  const missing = ids.find((id) => !rows.some((row) => row.id === id));
+  if (missing) throw new PennyweightError('recipe-invalid', `Step 1: archive ${missing} is not in this campaign: choose one that is.`, { archive: missing });
+}
+
+export async function putRecipe(app: App, caller: Caller, id: string, given: Recipe, version: number): Promise<Draft> {
+  const row = await findDraft(app, caller, id);
+  authorise(caller, 'update', 'Draft', row);
+  mustBeEditable(row);
+  const recipe = readRecipe(given);
+  await mustBelong(app, row.campaignId, recipe);
+  const makers = await makersOf(app, recipe, row.createdBy);
+  if (!makers.includes(caller.user.id)) makers.push(caller.user.id);
+  await app.db.transaction(async (tx) => {
+    const changed = await tx.update(draft).set({ recipe, recipeHash: recipeHash(recipe), makers, version: version + 1, updatedAt: new Date() }).where(and(eq(draft.id, id), eq(draft.version, version), inArray(draft.state, ['draft', 'returned']))).returning({ id: draft.id });
+    if (changed.length === 0) throw new PennyweightError('stale-version', 'Somebody changed this draft in the meantime: reload it and make your change again.', { version });
+    await recordAudit(tx, caller, { action: 'draft.recipe', objectType: 'draft', objectId: id, label: await draftLabel(tx, row), campaignId: row.campaignId, before: row.recipe, after: recipe });
+  });
+  return getDraft(app, caller, id);
+}
+
+export async function buildDraft(app: App, caller: Caller, id: string): Promise<Draft> {
+  const row = await findDraft(app, caller, id);
+  authorise(caller, 'build', 'Draft', row);
+  mustBeEditable(row);
+  await app.db.transaction(async (tx) => {
+    const jobId = await app.queue.enqueue(tx, { kind: 'build', subjectType: 'draft', subjectId: id, label: `Build of ${await draftLabel(tx, row)}`, campaignId: row.campaignId, createdBy: caller.user.id });
+    await tx.update(draft).set({ jobId, updatedAt: new Date() }).where(eq(draft.id, id));
+    await recordAudit(tx, caller, { action: 'draft.ask-build', objectType: 'draft', objectId: id, label: await draftLabel(tx, row), campaignId: row.campaignId, after: { recipe: row.recipeHash } });
+  });
+  return getDraft(app, caller, id);
+}

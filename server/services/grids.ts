@@ -1,0 +1,42 @@
+/** Grids of a campaign's other archives, to compare a new one with. */
+import { and, asc, eq, isNotNull, ne, or, sql } from 'drizzle-orm';
+import type { CheckSubject } from '../engine/checks/check.ts';
+import { archive, run, survey as surveyTable } from '../db/schema/index.ts';
+import type { Queryable } from '../db/database.ts';
+import type { Survey } from '../engine/survey.ts';
+import type { ArchiveRow } from './archives.ts';
+import type { App } from './context.ts';
+import { gridHash, loadSurvey } from './survey-store.ts';
+
+/** Grids that are loaded to be compared: more of them that differ from each other say nothing new. */
+const mostGrids = 10;
+/** Archives named with one grid. */
+const mostNamed = 20;
+
+/** Handed in earlier: what came first sets the campaign's grid, so that one odd archive does not put all others in doubt. */
+const earlierThan = (row: ArchiveRow) => sql`(${archive.createdAt}, ${archive.id}) < (${row.createdAt.toISOString()}::timestamptz, ${row.id}::uuid)`;
+const comparable = (row: ArchiveRow) => and(eq(archive.campaignId, row.campaignId), eq(archive.state, 'checked'), isNotNull(surveyTable.gridHash));
+
+/** Grids that are not equal to this one to the last bit; whether they are equal to rounding is for the check to say. */
+export async function otherGrids(app: App, row: ArchiveRow, survey: Survey): Promise<CheckSubject['otherGrids']> {
+  const mine = gridHash(survey);
+  if (mine === null) return [];
+  const others = await app.db
+    .select({ id: archive.id, name: archive.name, run: run.name, grid: surveyTable.gridHash }).from(archive)
+    .innerJoin(surveyTable, eq(surveyTable.archiveId, archive.id)).innerJoin(run, eq(run.id, archive.runId))
+    .where(and(comparable(row), earlierThan(row), ne(surveyTable.gridHash, mine))).orderBy(asc(archive.createdAt)).limit(1000);
+  const byGrid = new Map<string | null, typeof others>();
+  for (const each of others) byGrid.set(each.grid, [...(byGrid.get(each.grid) ?? []), each]);
+  const grids = await Promise.all([...byGrid.values()].slice(0, mostGrids).map(async (same) => {
+    const theirs = await loadSurvey(app, same[0].id);
+    return theirs ? same.slice(0, mostNamed).map((each) => ({ archive: `${each.run} (${each.name})`, axes: theirs.axes })) : [];
+  }));
+  return grids.flat();
+}
+
+/** Archives handed in later and checked before this one's grid was known: they have not been compared with it. */
+export async function uncomparedArchives(tx: Queryable, row: ArchiveRow, grid: string): Promise<ArchiveRow[]> {
+  const found = await tx.select({ row: archive }).from(archive).innerJoin(surveyTable, eq(surveyTable.archiveId, archive.id))
+    .where(and(comparable(row), sql`not ${earlierThan(row)}`, ne(archive.id, row.id), or(ne(surveyTable.gridHash, grid))));
+  return found.map((each) => each.row);
+}

@@ -1,0 +1,124 @@
+/** The matrix on disk: NPY, Fortran order, so that a column (one snapshot) is contiguous. Written once, front to back; read by columns or tiles of rows. */
+import { createHash, type Hash } from 'node:crypto';
+import { open, type FileHandle } from 'node:fs/promises';
+import { PennyweightError } from '#contract/error.ts';
+import { bytesOf, npyHeader } from '../engine/release/npy.ts';
+import type { RowTile, RowTileSource } from '../engine/spectrum/spectrum.ts';
+
+export interface MatrixShape {
+  rows: number;
+  columns: number;
+  type: 'float32' | 'float64';
+}
+
+const tileBytes = 32 * 2 ** 20;
+
+async function readFully(handle: FileHandle, into: Uint8Array, position: number): Promise<void> {
+  for (let done = 0; done < into.length; ) {
+    const { bytesRead } = await handle.read(into, done, into.length - done, position + done);
+    if (bytesRead === 0) throw new PennyweightError('internal', 'The stored matrix is shorter than its header says: restore it from the backup.', { position: position + done });
+    done += bytesRead;
+  }
+}
+
+export class MatrixWriter {
+  private readonly handle: FileHandle;
+  private readonly shape: MatrixShape;
+  private readonly hash: Hash = createHash('sha256');
+  private written = 0;
+  /** largest |x - float32(x)| met */
+  castError = 0;
+
+  private constructor(handle: FileHandle, shape: MatrixShape) {
+    this.handle = handle;
+    this.shape = shape;
+  }
+
+  static async create(path: string, shape: MatrixShape): Promise<MatrixWriter> {
+    const writer = new MatrixWriter(await open(path, 'wx'), shape);
+    await writer.put(npyHeader(shape.type, [shape.rows, shape.columns], true));
+    return writer;
+  }
+
+  /** Whole columns, one after the other. */
+  async append(values: Float64Array): Promise<void> {
+    if (this.shape.type === 'float64') return this.put(new Uint8Array(values.buffer, values.byteOffset, values.byteLength));
+    const single = Float32Array.from(values);
+    for (let i = 0; i < values.length; i++) {
+      const error = Math.abs(values[i] - single[i]);
+      if (error > this.castError) this.castError = error;
+    }
+    await this.put(new Uint8Array(single.buffer));
+  }
+
+  async close(): Promise<{ sha256: string; bytes: number }> {
+    await this.handle.sync();
+    await this.handle.close();
+    return { sha256: this.hash.digest('hex'), bytes: this.written };
+  }
+
+  async abandon(): Promise<void> {
+    await this.handle.close();
+  }
+
+  private async put(bytes: Uint8Array): Promise<void> {
+    this.hash.update(bytes);
+    for (let done = 0; done < bytes.length; ) done += (await this.handle.write(bytes, done, bytes.length - done)).bytesWritten;
+    this.written += bytes.length;
+  }
+}
+
+export class MatrixReader implements RowTileSource {
+  readonly shape: MatrixShape;
+  private readonly handle: FileHandle;
+  private readonly start: number;
+
+  private constructor(handle: FileHandle, shape: MatrixShape) {
+    this.handle = handle;
+    this.shape = shape;
+    this.start = npyHeader(shape.type, [shape.rows, shape.columns], true).length;
+  }
+
+  static async open(path: string, shape: MatrixShape): Promise<MatrixReader> {
+    return new MatrixReader(await open(path, 'r'), shape);
+  }
+
+  get snapshots(): number {
+    return this.shape.columns;
+  }
+
+  get nodes(): number {
+    return this.shape.rows;
+  }
+
+  /** Rows [from, from + count) of columns [first, first + columns), column after column. */
+  async block(first: number, columns: number, from: number, count: number): Promise<Float64Array> {
+    const { rows, type } = this.shape, size = bytesOf[type];
+    const raw = new Uint8Array(columns * count * size);
+    if (count === rows) await readFully(this.handle, raw, this.start + first * rows * size);
+    else for (let j = 0; j < columns; j++) await readFully(this.handle, raw.subarray(j * count * size, (j + 1) * count * size), this.start + ((first + j) * rows + from) * size);
+    return type === 'float64' ? new Float64Array(raw.buffer) : Float64Array.from(new Float32Array(raw.buffer));
+  }
+
+  async *tiles(): AsyncGenerator<RowTile> {
+    const { rows, columns } = this.shape;
+    const count = Math.max(1, Math.min(rows, Math.floor(tileBytes / (8 * columns))));
+    for (let from = 0; from < rows; from += count) {
+      const height = Math.min(count, rows - from);
+      yield { from, rows: height, values: await this.block(0, columns, from, height) };
+    }
+  }
+
+  /** Blocks of whole columns of about 32 MiB. */
+  async *columnBlocks(): AsyncGenerator<{ first: number; columns: number; values: Float64Array }> {
+    const step = Math.max(1, Math.floor(tileBytes / (8 * this.shape.rows)));
+    for (let first = 0; first < this.shape.columns; first += step) {
+      const columns = Math.min(step, this.shape.columns - first);
+      yield { first, columns, values: await this.block(first, columns, 0, this.shape.rows) };
+    }
+  }
+
+  async close(): Promise<void> {
+    await this.handle.close();
+  }
+}
