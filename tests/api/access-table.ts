@@ -19,7 +19,7 @@ const sessions: CallerName[] = [...team, 'stranger'];
 const tokens: CallerName[] = ['token:read', 'token:pull', 'token:hand-in'];
 /** Reading what belongs to a campaign: its members and their tokens. */
 const readers: CallerName[] = [...team, ...tokens];
-/** Lists of what one may see, for anybody who is known; that rows are left out is tested in visibility.test.ts. */
+/** Lists of what one may see, for anybody who is known; access.test.ts sees to it that nothing of "here" is in a stranger's. */
 const known: CallerName[] = [...sessions, ...tokens, 'token:elsewhere'];
 const everybody: CallerName[] = [...callers];
 

@@ -1,7 +1,7 @@
 /** pennyweight weights: judges the time rules on an archive's stamps, weighs its nodes, and shows the weighted spectrum. */
 import { spaceRuleIds, timeRuleIds, type SpaceRuleId, type TimeRuleId } from '#contract/weights.ts';
 import { timeRules } from '../../engine/quadrature/index.ts';
-import { portable } from '../../linalg/portable.ts';
+import { linearAlgebra } from '../../linalg/choose.ts';
 import { groupArchives } from '../archive-files.ts';
 import type { Command } from '../command.ts';
 import { exitStatus } from '../exit-status.ts';
@@ -60,10 +60,11 @@ export const command: Command = {
     if (values.out !== undefined) prepareFolder(values.out);
 
     const [{ name }] = files;
-    const weighed = await weighArchive(files, { choice, rule, space, algebra: portable, onShare: (share) => terminal.progress(name, share) });
+    const algebra = await linearAlgebra();
+    const weighed = await weighArchive(files, { choice, rule, space, algebra, onShare: (share) => terminal.progress(name, share) });
     try {
       terminal.progress(name, null);
-      const written = values.out === undefined ? [] : await writeWeights(values.out, weighed, rank, portable);
+      const written = values.out === undefined ? [] : await writeWeights(values.out, weighed, rank, algebra);
       terminal.result(values.json ? JSON.stringify(weighed.report) : weightsText(name, weighed.report, rank));
       if (written.length > 0) terminal.message(`Written to ${values.out}: ${written.join(', ')}.`);
     } finally {
