@@ -1,5 +1,6 @@
 /** One person of the demo at the HTTP API: signs in, calls routes of the contract, hands in files by tus. */
 import { open } from 'node:fs/promises';
+import { Readable } from 'node:stream';
 import type { Job } from '#contract/operation.ts';
 import { tusPath, type Delivery } from '#contract/archive.ts';
 import { PennyweightError, problem } from '#contract/error.ts';
@@ -54,7 +55,7 @@ export class HttpPerson {
       const handle = await open(pathOf(file.name));
       try {
         const sent = await fetch(`${this.base}${tusPath}/${file.id}`, {
-          method: 'PATCH', duplex: 'half', body: handle.readableWebStream() as ReadableStream,
+          method: 'PATCH', duplex: 'half', body: Readable.toWeb(handle.createReadStream({ autoClose: false })),
           headers: this.headers({ 'tus-resumable': '1.0.0', 'upload-offset': '0', 'content-type': 'application/offset+octet-stream' }),
         } as RequestInit);
         if (sent.status !== 204) throw await refusal(sent, `sending ${file.name}`);

@@ -24,6 +24,7 @@ const protocolRefusals: Partial<Record<number, { code: ErrorCode; sentence: stri
   409: { code: 'conflict', sentence: 'The bytes do not go on where the file ends on the server: ask for its offset and go on from there.' },
   412: { code: 'invalid-input', sentence: 'This address speaks tus 1.0.0: send the header Tus-Resumable: 1.0.0.' },
   413: { code: 'upload-too-long', sentence: 'More bytes were sent than were announced: announce the file again with its true size. What fits is kept.' },
+  501: { code: 'invalid-input', sentence: 'Send the length of the file with Upload-Length: a deferred length and concatenation are not accepted.' },
 };
 
 function toPennyweight(status: number, words: string): PennyweightError {
@@ -38,8 +39,14 @@ class UploadServer extends Server {
   override write(context: Parameters<Server['write']>[0], headers: Headers, status: number, body = ''): ReturnType<Server['write']> {
     if (status < 400) return super.write(context, headers, status, body);
     headers.set('Content-Type', 'application/problem+json');
-    const text = body.startsWith('{') ? body : JSON.stringify(problemFor(toPennyweight(status, body)));
-    return super.write(context, headers, (JSON.parse(text) as { status: number }).status, text);
+    if (body.startsWith('{')) return super.write(context, headers, status, body);
+    const problem = problemFor(toPennyweight(status, body));
+    // "If the version is not supported, the Server MUST respond with 412 and MUST include the Tus-Version header."
+    if (status === 412) {
+      headers.set('Tus-Version', '1.0.0');
+      problem.status = 412;
+    }
+    return super.write(context, headers, problem.status, JSON.stringify(problem));
   }
 }
 

@@ -15,7 +15,7 @@ import type { App } from '../services/context.ts';
 import { archivesOf, recipeSources } from '../services/draft-sources.ts';
 import { draftForBuild, finishBuild } from '../services/draft-builds.ts';
 import { openArchiveFiles } from '../services/reading-pool.ts';
-import { MatrixReader, MatrixWriter } from '../storage/matrix-file.ts';
+import { MatrixReader, MatrixWriter } from '../services/matrix-store.ts';
 import { buildFiles, summarise } from '../engine/release/build-files.ts';
 import type { JobHandle } from './handle.ts';
 

@@ -17,7 +17,7 @@ import { draftForBuild } from '../services/draft-builds.ts';
 import { findingsOfDraft } from '../services/draft-findings.ts';
 import { finishRelease, nextVersion } from '../services/release-making.ts';
 import { releaseFacts } from '../services/release-facts.ts';
-import { MatrixReader } from '../storage/matrix-file.ts';
+import { MatrixReader } from '../services/matrix-store.ts';
 import type { JobHandle } from './handle.ts';
 import { releaseArrays, releaseAttributes } from './release-arrays.ts';
 

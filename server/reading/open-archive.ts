@@ -2,7 +2,6 @@
 import { PennyweightError } from '#contract/error.ts';
 import type { Archive, ArchiveFile } from './archive.ts';
 import { openFile } from './file-bytes.ts';
-import { openHdf5Archive } from './hdf5/hdf5-archive.ts';
 import type { Limits } from './limits.ts';
 import { openNpyArchive } from './npy/npy-archive.ts';
 import { signatureOf } from './signature.ts';
@@ -12,7 +11,11 @@ export async function openArchive(files: ArchiveFile[], limits: Limits): Promise
   const opened = files.map(({ name, path }) => openFile(path, name));
   const signatures = opened.map(signatureOf);
   const [first] = signatures;
-  if (first.format === 'hdf5' && signatures.length === 1) return openHdf5Archive(files[0].path, opened[0], first.offset, limits);
+  if (first.format === 'hdf5' && signatures.length === 1) {
+    // The library takes half a second to start: only for files that need it.
+    const { openHdf5Archive } = await import('./hdf5/hdf5-archive.ts');
+    return openHdf5Archive(files[0].path, opened[0], first.offset, limits);
+  }
   const stranger = signatures.findIndex(({ format }) => format !== 'npy');
   if (stranger >= 0) {
     throw new PennyweightError(

@@ -36,11 +36,23 @@ export async function writeReleaseHdf5(path: string, matrix: ReleaseMatrix, arra
         dataset.refresh();
       }
     }
+    const groups = new Set<string>();
     for (const array of arrays) {
+      makeGroups(file, array.path, groups);
       const written = file.create_dataset({ name: array.path.replace(/^\//, ''), data: array.values, shape: array.shape });
       for (const [name, value] of Object.entries(array.attributes)) written.create_attribute(name, value);
     }
   } finally {
     file.close();
+  }
+}
+
+/** HDF5 makes no groups by itself. */
+function makeGroups(file: { create_group(name: string): unknown }, path: string, made: Set<string>): void {
+  const parts = path.replace(/^\//, '').split('/').slice(0, -1);
+  for (let k = 1; k <= parts.length; k++) {
+    const group = parts.slice(0, k).join('/');
+    if (!made.has(group)) file.create_group(group);
+    made.add(group);
   }
 }

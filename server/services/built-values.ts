@@ -9,7 +9,7 @@ import { splitCodes } from '../engine/release/build-files.ts';
 import { npyHeader } from '../engine/release/npy.ts';
 import { marksOf } from './archive-record.ts';
 import { fieldValues } from './field-values.ts';
-import { MatrixReader } from '../storage/matrix-file.ts';
+import { MatrixReader } from './matrix-store.ts';
 
 interface FieldsFile {
   fields: { name: string; unit: string | null; axes: { name: string; unit: string | null; count: number; nodes: number[] | null }[] }[];

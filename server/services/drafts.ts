@@ -10,8 +10,8 @@ import { findingCounts } from './archives.ts';
 import { recordAudit } from './audit.ts';
 import { authorise, mustSee, type App, type Caller } from './context.ts';
 import { findDataset } from './datasets.ts';
-import type { DraftRow } from './draft-builds.ts';
-import { archivesOf, makersOf } from './draft-sources.ts';
+import { archivesOf, inputsHash, makersOf } from './draft-sources.ts';
+import { mustBeEditable, type DraftRow } from './draft-states.ts';
 import { draftSummaries } from './draft-summaries.ts';
 import { peopleById } from './people.ts';
 import { recipeHash } from './recipe-hash.ts';
@@ -29,11 +29,7 @@ export async function draftLabel(tx: Queryable, row: DraftRow): Promise<string> 
   return `${parent.title}, draft ${row.number}`;
 }
 
-export function mustBeEditable(row: DraftRow): void {
-  if (row.state !== 'draft' && row.state !== 'returned') throw new PennyweightError('wrong-state', `This draft is ${row.state}: only a draft, or one that was returned, can be changed.`, { state: row.state });
-}
-
-const events: Record<string, string> = { 'draft.begin': 'began the draft', 'draft.recipe': 'changed the recipe', 'draft.build': 'built the matrix', 'draft.submit': 'submitted it for review', 'draft.return': 'returned it', 'draft.approve': 'approved it', 'release.make': 'the release was made' };
+const events: Record<string, string> = { 'draft.begin': 'began the draft', 'draft.recipe': 'changed the recipe', 'draft.ask-build': 'asked for a build', 'draft.build': 'the matrix was built', 'draft.submit': 'submitted it for review', 'draft.return': 'returned it', 'draft.approve': 'approved it', 'draft.release': 'the release was made' };
 
 export async function describeDraft(app: App, row: DraftRow): Promise<Draft> {
   const [summary] = await draftSummaries(app, [row]);
@@ -43,7 +39,7 @@ export async function describeDraft(app: App, row: DraftRow): Promise<Draft> {
   const counts = await findingCounts(app.db, 'archive', ids);
   const person = await peopleById(app.db, [...row.makers, ...archives.map((each) => each.by)]);
   return {
-    ...summary, recipe: row.recipe, version: row.version, stale: row.build !== null && row.buildHash !== row.recipeHash, build: row.build, jobId: row.jobId, makers: row.makers.map(person),
+    ...summary, recipe: row.recipe, version: row.version, stale: row.build !== null && row.buildHash !== (await inputsHash(app.db, row.recipe)), build: row.build, jobId: row.jobId, makers: row.makers.map(person),
     history: log.map((entry) => ({ at: entry.at.toISOString(), by: { id: entry.actorId ?? '', name: entry.actorName }, what: events[entry.action] ?? entry.action, reason: entry.reason })),
     sources: ids.flatMap((id) => {
       const found = archives.find((each) => each.id === id);
@@ -59,7 +55,7 @@ export async function getDraft(app: App, caller: Caller, id: string): Promise<Dr
 export async function createDraft(app: App, caller: Caller, campaignSlug: string, slug: string, given: Recipe): Promise<Draft> {
   const { row: parent } = await findDataset(app, caller, campaignSlug, slug);
   authorise(caller, 'create', 'Draft', { campaignId: parent.campaignId });
-  const recipe = readRecipe(given), makers = await makersOf(app, recipe, caller.user.id);
+  const recipe = readRecipe(given), makers = await makersOf(app.db, recipe, null, caller.user.id);
   await mustBelong(app, parent.campaignId, recipe);
   const made = await app.db.transaction(async (tx) => {
     await tx.select({ id: dataset.id }).from(dataset).where(eq(dataset.id, parent.id)).for('update');
@@ -85,10 +81,10 @@ export async function putRecipe(app: App, caller: Caller, id: string, given: Rec
   mustBeEditable(row);
   const recipe = readRecipe(given);
   await mustBelong(app, row.campaignId, recipe);
-  const makers = await makersOf(app, recipe, row.createdBy);
-  if (!makers.includes(caller.user.id)) makers.push(caller.user.id);
   await app.db.transaction(async (tx) => {
-    const changed = await tx.update(draft).set({ recipe, recipeHash: recipeHash(recipe), makers, version: version + 1, updatedAt: new Date() }).where(and(eq(draft.id, id), eq(draft.version, version), inArray(draft.state, ['draft', 'returned']))).returning({ id: draft.id });
+    const makers = await makersOf(tx, recipe, id, caller.user.id);
+    // The review is over: whoever returned it may now be among its makers. The audit log keeps who it was.
+    const changed = await tx.update(draft).set({ recipe, recipeHash: recipeHash(recipe), makers, reviewedBy: null, reviewedAt: null, version: version + 1, updatedAt: new Date() }).where(and(eq(draft.id, id), eq(draft.version, version), inArray(draft.state, ['draft', 'returned']))).returning({ id: draft.id });
     if (changed.length === 0) throw new PennyweightError('stale-version', 'Somebody changed this draft in the meantime: reload it and make your change again.', { version });
     await recordAudit(tx, caller, { action: 'draft.recipe', objectType: 'draft', objectId: id, label: await draftLabel(tx, row), campaignId: row.campaignId, before: row.recipe, after: recipe });
   });
@@ -100,8 +96,10 @@ export async function buildDraft(app: App, caller: Caller, id: string): Promise<
   authorise(caller, 'build', 'Draft', row);
   mustBeEditable(row);
   await app.db.transaction(async (tx) => {
+    const makers = await makersOf(tx, row.recipe, id, caller.user.id);
     const jobId = await app.queue.enqueue(tx, { kind: 'build', subjectType: 'draft', subjectId: id, label: `Build of ${await draftLabel(tx, row)}`, campaignId: row.campaignId, createdBy: caller.user.id });
-    await tx.update(draft).set({ jobId, updatedAt: new Date() }).where(eq(draft.id, id));
+    const changed = await tx.update(draft).set({ jobId, makers, reviewedBy: null, reviewedAt: null, updatedAt: new Date() }).where(and(eq(draft.id, id), eq(draft.version, row.version), inArray(draft.state, ['draft', 'returned']))).returning({ id: draft.id });
+    if (changed.length === 0) throw new PennyweightError('stale-version', 'Somebody changed this draft in the meantime: reload it and build again.');
     await recordAudit(tx, caller, { action: 'draft.ask-build', objectType: 'draft', objectId: id, label: await draftLabel(tx, row), campaignId: row.campaignId, after: { recipe: row.recipeHash } });
   });
   return getDraft(app, caller, id);

@@ -6,7 +6,7 @@ import { PennyweightError } from '#contract/error.ts';
 import type { matrixQuery } from '#contract/release.ts';
 import { splitCodes } from '../engine/release/build-files.ts';
 import { bytesOf, npyHeader } from '../engine/release/npy.ts';
-import { MatrixReader } from '../storage/matrix-file.ts';
+import { MatrixReader } from './matrix-store.ts';
 import { pull } from '../db/schema/index.ts';
 import { recordAudit } from './audit.ts';
 import { authorise, type App, type Caller } from './context.ts';

@@ -3,10 +3,10 @@ import { asc, eq, inArray } from 'drizzle-orm';
 import { PennyweightError } from '#contract/error.ts';
 import type { ReleaseFacts } from '../engine/release/facts.ts';
 import { archive, archiveFile, campaign, dataset, finding, run } from '../db/schema/index.ts';
-import { version as program } from './health.ts';
+import { version as program } from './version.ts';
 import type { App } from './context.ts';
-import type { DraftRow } from './draft-builds.ts';
 import { archivesOf } from './draft-sources.ts';
+import type { DraftRow } from './draft-states.ts';
 import { peopleById } from './people.ts';
 
 /** `version` is the number that the release will get. */

@@ -14,4 +14,4 @@ function versionOfCheckout(): string {
   }
 }
 
-export export const version = versionOfCheckout();
+export const version = versionOfCheckout();

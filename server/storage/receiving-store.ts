@@ -22,6 +22,8 @@ export interface Announced {
 
 /** Gathered before each write: large enough for few system calls, small enough to stay flat in memory. */
 const writeBlock = 2 ** 20;
+/** On a slow line what came is written at least this often, so that a crash costs little of it. */
+const writeMillis = 500;
 /** Hash states kept of uploads that pause. */
 const mostHashes = 1000;
 
@@ -64,7 +66,7 @@ export class ReceivingStore extends FileStore {
     this.#hashes.delete(id);
     const handle = await open(join(this.directory, id), 'r+');
     let at = offset;
-    let gathered: Buffer[] = [], gatheredBytes = 0;
+    let gathered: Buffer[] = [], gatheredBytes = 0, flushedAt = Date.now();
     let writing: Promise<void> = Promise.resolve();
     const flush = async (): Promise<void> => {
       await writing;
@@ -74,6 +76,7 @@ export class ReceivingStore extends FileStore {
       at += gatheredBytes;
       gathered = [];
       gatheredBytes = 0;
+      flushedAt = Date.now();
     };
     try {
       let broken: unknown = null;
@@ -83,7 +86,7 @@ export class ReceivingStore extends FileStore {
           gathered.push(chunk);
           gatheredBytes += chunk.length;
           this.#lock.sign(id);
-          if (gatheredBytes >= writeBlock) await flush();
+          if (gatheredBytes >= writeBlock || Date.now() - flushedAt >= writeMillis) await flush();
         }
       } catch (cause) {
         broken = cause;

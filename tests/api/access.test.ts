@@ -31,13 +31,13 @@ beforeAll(async () => {
   const { steward } = people;
 
   const worker = startWorker(app);
-  const gust = await makeGustCampaign(app, here, people);
-  const [corrected, withdrawn] = [await gust.handIn(), await gust.handIn()];
-  const submitted = await gust.submitDraft(gust.archive);
+  const prepared = await makeGustCampaign(app, here, people)
+    .then(async (gust) => ({ gust, corrected: await gust.handIn(), withdrawn: await gust.handIn(), submitted: await gust.submitDraft(gust.archive) }))
+    // From here on jobs wait: what a walk over all callers changes is to stay as it is.
+    .finally(() => worker.stop());
+  const { gust, corrected, withdrawn, submitted } = prepared;
   const { findings } = await steward.call(routes.listArchiveFindings, { params: { archive: corrected.archive } });
   const caution = findings.find((finding) => finding.severity === 'caution')!;
-  // From here on jobs wait: what a walk over all callers changes is to stay as it is.
-  await worker.stop();
   const draft = await people.modeler.call(routes.createDraft, { params: gust, body: { recipe: (await people.modeler.call(routes.getDraft, { params: { draft: submitted } })).recipe } });
 
   scene = {

@@ -7,7 +7,7 @@
 import type { Survey } from '../survey.ts';
 import type { Check, CheckSubject, Judgement } from './check.ts';
 import { evidenceOf } from './evidence.ts';
-import { counted, plainNumber, snapshotText, theCounted } from './quantity.ts';
+import { counted, plainNumber, theCounted } from './quantity.ts';
 import { dropSnapshots } from './remedy.ts';
 import { shortArrays, snapshotCount, unwrittenTail } from './written-part.ts';
 
@@ -25,7 +25,7 @@ function judgeTail(subject: CheckSubject, survey: Survey, tail: number): Judgeme
   const names = fields.map((field) => field.path);
   return {
     path: fields.length === 1 ? last.path : null,
-    message: `The last ${counted(tail, 'snapshot')} of ${m} in ${names.slice(0, 3).join(', ')}${names.length > 3 ? ', …' : ''} ${tail === 1 ? 'holds' : 'hold'} nothing but the fill value ${plainNumber(value)}, from ${snapshotText(survey, indices[0])} on: the writer stopped there; drop them or upload the complete file.`,
+    message: `The last ${counted(tail, 'snapshot')} of ${m} in ${names.slice(0, 3).join(', ')}${names.length > 3 ? ', …' : ''} ${tail === 1 ? 'holds' : 'hold'} nothing but the fill value ${plainNumber(value)}, from snapshot ${indices[0]} on: the writer stopped there; drop them or upload the complete file.`,
     evidence: evidenceOf(indices, survey.stamps, { fields: names.slice(0, 20), written: m - tail }),
     remedy: dropSnapshots(subject, indices, `Drop ${theCounted(tail, 'unwritten snapshot')} at the end.`),
   };
@@ -49,7 +49,7 @@ export const fileUnwrittenData: Check = {
       const indices = field && field.trailingFill > 0 && field.trailingFill < m ? tailIndices(survey, field.trailingFill) : [];
       return {
         path,
-        message: `${path} holds ${held} of the ${needed} values that its shape promises; the rest was never written and would be read as the fill value${indices.length > 0 ? `, from ${snapshotText(survey, indices[0])} on` : ''}: trim the record to what was written or upload the complete file.`,
+        message: `${path} holds ${held} of the ${needed} values that its shape promises; the rest was never written and would be read as the fill value${indices.length > 0 ? `, from snapshot ${indices[0]} on` : ''}: trim the record to what was written or upload the complete file.`,
         evidence: { ...evidenceOf(indices, survey.stamps), count: needed - held, held, needed },
         remedy: indices.length > 0 ? dropSnapshots(subject, indices, `Drop ${theCounted(indices.length, 'unwritten snapshot')} at the end.`) : null,
       };

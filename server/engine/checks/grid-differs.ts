@@ -8,7 +8,7 @@ import type { ElementType } from '#contract/reading.ts';
 import type { Check, CheckSubject } from './check.ts';
 import { evidenceLength } from './evidence.ts';
 import { counted, plainNumber } from './quantity.ts';
-import { gridAxes, nodeCoordinates, roundOff } from './space-axes.ts';
+import { gridOf, roundOff } from './space-axes.ts';
 
 export interface Grid {
   name: string;
@@ -42,7 +42,7 @@ export function compareGrids(ours: Grid[], theirs: Grid[]): string | null {
     const clause = other ? difference(axis, other) : `the axis ${axis.name} is missing there`;
     if (clause) return clause;
   }
-  const extra = theirs.find((candidate) => candidate.name !== 'component' && !ours.some((axis) => axis.name === candidate.name));
+  const extra = theirs.find((candidate) => candidate.name !== 'component' && candidate.name !== 'time' && !ours.some((axis) => axis.name === candidate.name));
   return extra ? `the axis ${extra.name} exists only there` : null;
 }
 
@@ -54,9 +54,7 @@ export const gridDiffers: Check = {
   thresholds: {},
   judge({ survey, otherGrids }: CheckSubject) {
     if (!survey || otherGrids.length === 0) return [];
-    const ours: Grid[] = [...gridAxes(survey), ...nodeCoordinates(survey)];
-    const node = survey.axes.find((axis) => axis.name === 'node');
-    if (node && !ours.includes(node)) ours.push(node);
+    const ours = gridOf(survey);
     if (ours.length === 0) return [];
     const differing = otherGrids.flatMap(({ archive, axes }) => {
       const clause = compareGrids(ours, axes);

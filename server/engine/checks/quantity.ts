@@ -5,7 +5,8 @@ import type { Survey } from '../survey.ts';
 /** `digits` significant digits without trailing zeros: 0.1 and not 0.1000000015 for a float32. */
 export function plainNumber(value: number, digits = 6): string {
   if (!Number.isFinite(value)) return Number.isNaN(value) ? 'not a number' : value > 0 ? 'infinity' : '-infinity';
-  return String(Number(value.toPrecision(digits)));
+  const rounded = Number(value.toPrecision(digits));
+  return Math.abs(rounded) < 1e15 ? String(rounded) : rounded.toExponential().replace('e+', 'e');
 }
 
 /** Significant decimal digits worth printing of a stored type: 24 and 11 significand bits hold 7 and 4 (IEEE 754-2019, table 3.1). */

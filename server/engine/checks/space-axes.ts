@@ -19,6 +19,13 @@ export function nodeCoordinates(survey: Survey): SurveyAxis[] {
   return survey.axes.filter((axis) => !structured.has(axis) && axis.nodes !== null && axis.nodes.length === node.count);
 }
 
+/** Grid of an archive in the form in which others are compared with it (CheckSubject.otherGrids). */
+export function gridOf(survey: Survey): { name: string; nodes: Float64Array | null; count: number; dtype: ElementType | null }[] {
+  const node = survey.axes.find((axis) => axis.name === 'node');
+  const axes = new Set([...gridAxes(survey), ...nodeCoordinates(survey), ...(node ? [node] : [])]);
+  return [...axes].map(({ name, nodes, count, dtype }) => ({ name, nodes, count, dtype }));
+}
+
 /** Unit round-off 2^-p of a stored type (IEEE 754-2019, table 3.1); integers and unknown types count as double. */
 export function roundOff(type: ElementType | null): number {
   if (type === 'float16') return 2 ** -11;

@@ -3,6 +3,7 @@
  * segment, then repeated stamps (the first of them stays), then what is left is sorted.
  */
 import { describeOrder } from '../checks/record-order.ts';
+import { roundOff } from '../checks/space-axes.ts';
 import { copies } from '../checks/value-frozen.ts';
 import { counted, type Column, type RecordState } from './record-state.ts';
 import { refuse, type Step } from './step.ts';
@@ -43,7 +44,8 @@ export const order: Step<'order'> = {
       }
       if (source.survey.stamps) {
         const t = Float64Array.from(columns, (column) => column.time!);
-        const found = describeOrder(t);
+        const unit = roundOff(source.survey.stampType);
+        const found = describeOrder(t, unit);
         if (found.undefinedStamps.length > 0) refuse(`Run ${source.run} has no time stamp at snapshot ${columns[found.undefinedStamps[0]].index}: drop it or correct the reading.`, { run: source.run });
         if (found.restarts.length > 0 && step.restart === 'refuse') {
           const first = found.restarts[0];
@@ -55,7 +57,7 @@ export const order: Step<'order'> = {
           overlapped += columns.length - stay.length;
           columns = stay.map((j) => columns[j]);
         }
-        const again = describeOrder(Float64Array.from(columns, (column) => column.time!));
+        const again = describeOrder(Float64Array.from(columns, (column) => column.time!), unit);
         if (!step.dropDuplicates && again.duplicates.length > 0) refuse(`Run ${source.run} has the time stamp ${columns[again.duplicates[0]].time} twice: let the step drop repeated stamps.`, { run: source.run });
         repeated += again.duplicates.length;
         overlapped += columns.length - again.kept.length - again.duplicates.length;

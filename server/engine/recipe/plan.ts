@@ -36,7 +36,7 @@ function misplaced(recipe: Recipe): { step: number; message: string } | null {
 
 /**
  * The record after the recipe, with the effect of each step and the problems met; planning stops at the first step that cannot be
- * applied. Without a weigh step every column and every row counts the same, which is said in the last effect.
+ * applied. Without a weigh step every column of a run and every row counts the same.
  */
 export function planRecipe(recipe: Recipe, sources: RecipeSource[]): RecordState {
   const state = emptyState(recipe, sources);
@@ -57,9 +57,21 @@ export function planRecipe(recipe: Recipe, sources: RecipeSource[]): RecordState
       return state;
     }
   }
-  if (!state.timeWeights) applyWeights(state, 'equal', 'none');
+  if (!state.timeWeights && !weighEqually(state)) return state;
   if (state.split.length === 0) state.split = new Array(state.columns.length).fill('train');
   return state;
+}
+
+/** Equal weights need stamps in order as well; false when there are none. */
+function weighEqually(state: RecordState): boolean {
+  try {
+    applyWeights(state, 'equal', 'none');
+    return true;
+  } catch (error) {
+    if (!(error instanceof PennyweightError)) throw error;
+    state.problems.push({ step: null, code: error.code, message: error.message });
+    return false;
+  }
 }
 
 /** The plan, or a refusal by its first problem. */

@@ -1,11 +1,12 @@
 /** Which findings of a source the recipe settles: judged again on what the recipe keeps, not by the mere presence of a step. */
-import type { Finding } from '#contract/finding.ts';
+import type { CheckPolicy, Finding } from '#contract/finding.ts';
+import { thresholdsOf } from '../checks/policy.ts';
 import { findGaps, timeGap } from '../checks/time-gap.ts';
 import type { FieldSurvey } from '../survey.ts';
 import type { RecordState } from './record-state.ts';
 
-/** A sentence that says how, or null when the finding stands. `plan` is without problems. */
-export function settledBy(finding: Pick<Finding, 'id' | 'path' | 'evidence'>, archive: string, plan: RecordState): string | null {
+/** A clause that says how, or null when the finding stands. `plan` is without problems; `policy`: the campaign's thresholds. */
+export function settledBy(finding: Pick<Finding, 'id' | 'path' | 'evidence'>, archive: string, plan: RecordState, policy: CheckPolicy = { thresholds: {} }): string | null {
   const s = plan.sources.findIndex((source) => source.archive === archive);
   if (s < 0) return 'select leaves this archive out';
   const { survey } = plan.sources[s];
@@ -20,9 +21,12 @@ export function settledBy(finding: Pick<Finding, 'id' | 'path' | 'evidence'>, ar
       // The plan refuses stamps that are not strictly increasing when it weighs them.
       return has('order') ? 'order puts the record forward in time and drops what is repeated' : null;
     case 'time/gap':
-      return survey.stamps && gapsOf(survey.stamps, kept) === 0 ? 'window leaves the gap out' : null;
+      return survey.stamps && gapsOf(survey.stamps, kept, policy) === 0 ? 'window leaves the gap out' : null;
     case 'time/uneven-spacing':
       return plan.timeRule !== 'equal' ? `weigh uses ${plan.timeRule}, made for uneven stamps` : null;
+    case 'grid/differs':
+      // The plan refuses runs whose grids differ; archives that are not in the recipe do not matter to it.
+      return 'select takes runs of one grid only';
     case 'grid/missing':
       return plan.spaceRule?.chosen === 'none' && has('weigh') ? 'weigh accepts equal weights for every node' : null;
     case 'value/frozen':
@@ -40,9 +44,9 @@ export function settledBy(finding: Pick<Finding, 'id' | 'path' | 'evidence'>, ar
   }
 }
 
-function gapsOf(stamps: Float64Array, kept: number[]): number {
-  const { ratio, growth, share } = timeGap.thresholds;
-  return findGaps(Float64Array.from(kept, (j) => stamps[j]), ratio.default, growth.default, share.default).length;
+function gapsOf(stamps: Float64Array, kept: number[], policy: CheckPolicy): number {
+  const { ratio, growth, share } = thresholdsOf(timeGap, policy);
+  return findGaps(Float64Array.from(kept, (j) => stamps[j]), ratio, growth, share).length;
 }
 
 /** Snapshots among the kept whose content was met before: right before, or anywhere. */

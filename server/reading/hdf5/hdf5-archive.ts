@@ -1,4 +1,5 @@
 /** One HDF5 file as an archive. */
+import { PennyweightError } from '#contract/error.ts';
 import type { ArchiveContents, ArrayInfo } from '#contract/reading.ts';
 import type { Archive } from '../archive.ts';
 import { arrayInfo } from '../contents-index.ts';
@@ -12,10 +13,10 @@ import { needsPlugin } from './filters.ts';
 import { libraryArray } from './library-array.ts';
 import { openHdf5 } from './library.ts';
 import type { ArrayStructure } from './structure/array-structure.ts';
-import { isOpenForWriting, readSuperblock } from './structure/superblock.ts';
+import { isOpenForWriting, readSuperblock, type Superblock } from './structure/superblock.ts';
 
 export async function openHdf5Archive(path: string, file: FileBytes, offset: number, limits: Limits): Promise<Archive> {
-  const superblock = readSuperblock(file, offset);
+  const superblock = superblockOf(file, offset);
   const library = await openHdf5(path, file, superblock);
   const { arrays, groups, outsideLinks, damaged, structures, unlimited } = readHdf5Contents(library, superblock, 0, limits);
   const contents: ArchiveContents = {
@@ -51,6 +52,19 @@ export async function openHdf5Archive(path: string, file: FileBytes, offset: num
       file.close();
     },
   };
+}
+
+function superblockOf(file: FileBytes, offset: number): Superblock {
+  try {
+    return readSuperblock(file, offset);
+  } catch (cause) {
+    throw new PennyweightError(
+      'file-unreadable',
+      `${file.name} has the signature of HDF5 and then no sound superblock: it is damaged or cut off after ${file.size} bytes; upload it again.`,
+      { file: file.name, actual: file.size },
+      { cause },
+    );
+  }
 }
 
 /** Contiguous data straight from the file: no copy through the library's memory. */

@@ -13,8 +13,33 @@ export type Values =
 
 /** Elements of one block: small enough for the first cache level together with the snapshot before. */
 const blockLength = 2048;
-/** Squares beyond 1e308 overflow: such values are squared at this scale, 2^-600. */
+/** Squares beyond 1e308 overflow: such values are squared at this scale. */
 const scale = 2 ** -600;
+
+/** Roots of sums of squares, one a snapshot, that do not overflow before the root itself does. */
+class RootOfSquares {
+  readonly #plain: Float64Array;
+  readonly #scaled: Float64Array;
+
+  constructor(count: number) {
+    this.#plain = new Float64Array(count);
+    this.#scaled = new Float64Array(count);
+  }
+
+  addSquares(j: number, squares: number): void {
+    this.#plain[j] += squares;
+  }
+
+  add(j: number, value: number): void {
+    const square = value * value;
+    if (square < Infinity) this.#plain[j] += square;
+    else this.#scaled[j] += (value * scale) ** 2;
+  }
+
+  root(j: number): number {
+    return this.#scaled[j] === 0 ? Math.sqrt(this.#plain[j]) : Math.sqrt(this.#scaled[j] + this.#plain[j] * scale * scale) / scale;
+  }
+}
 
 export interface FillCount extends FillCandidate {
   counts: Float64Array;
@@ -29,10 +54,9 @@ export class FieldTally {
   readonly sum: Float64Array;
   readonly nonFinite: Float64Array;
   readonly firstNonFinite: Float64Array;
-  readonly step: Float64Array;
   readonly fill = new Map<number, FillCount>();
-  readonly #squares: Float64Array;
-  readonly #large: Float64Array;
+  readonly #squares: RootOfSquares;
+  readonly #steps: RootOfSquares;
   readonly #mixA: Int32Array;
   readonly #mixB: Int32Array;
   readonly #candidates: FillCandidate[];
@@ -47,9 +71,8 @@ export class FieldTally {
     this.sum = column(0);
     this.nonFinite = column(0);
     this.firstNonFinite = column(-1);
-    this.step = column(0);
-    this.#squares = column(0);
-    this.#large = column(0);
+    this.#squares = new RootOfSquares(snapshots);
+    this.#steps = new RootOfSquares(snapshots);
     this.#mixA = new Int32Array(snapshots);
     this.#mixB = new Int32Array(snapshots);
   }
@@ -73,8 +96,8 @@ export class FieldTally {
       }
       if (Number.isFinite(block.squares) && Number.isFinite(block.step)) {
         this.sum[j] += block.sum;
-        this.#squares[j] += block.squares;
-        this.step[j] += block.step;
+        this.#squares.addSquares(j, block.squares);
+        this.#steps.addSquares(j, block.step);
         if (block.min < this.min[j]) this.min[j] = block.min;
         if (block.max > this.max[j]) this.max[j] = block.max;
       } else {
@@ -93,13 +116,11 @@ export class FieldTally {
         continue;
       }
       this.sum[j] += value;
-      const square = value * value;
-      if (square < Infinity) this.#squares[j] += square;
-      else this.#large[j] += (value * scale) ** 2;
+      this.#squares.add(j, value);
       if (value < this.min[j]) this.min[j] = value;
       if (value > this.max[j]) this.max[j] = value;
       const difference = value - before[beforeAt + i];
-      if (Number.isFinite(difference)) this.step[j] += difference * difference;
+      if (Number.isFinite(difference)) this.#steps.add(j, difference);
     }
   }
 
@@ -125,8 +146,12 @@ export class FieldTally {
 
   /** Euclidean norm over the finite values. */
   norm(j: number): number {
-    const large = this.#large[j];
-    return large === 0 ? Math.sqrt(this.#squares[j]) : Math.sqrt(large + this.#squares[j] * scale * scale) / scale;
+    return this.#squares.root(j);
+  }
+
+  /** Euclidean norm of the difference to the snapshot before, where both are finite. */
+  stepChange(j: number): number {
+    return this.#steps.root(j);
   }
 
   hash(j: number): string {

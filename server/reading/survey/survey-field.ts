@@ -124,7 +124,7 @@ function finish(source: FieldSource, unit: string | null, tally: FieldTally, cha
     firstNonFinite: tally.firstNonFinite.map((node) => nodeOf(axes, node)),
     fill: [...tally.fill.values()].map((entry) => ({ ...entry, firstNode: nodeOf(axes, entry.firstNode) })),
     hash,
-    stepChange: column((j) => (j === 0 ? 0 : Math.sqrt(tally.step[j]))),
+    stepChange: column((j) => tally.stepChange(j)),
     changedNodes,
     spread,
     allocated: source.allocated,

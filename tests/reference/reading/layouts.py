@@ -1,5 +1,6 @@
 """One archive a layout, element type and order, and what NumPy makes of each field: rows are snapshots, columns nodes."""
 import json
+import math
 import sys
 import warnings
 import h5py
@@ -36,10 +37,10 @@ def describe(archive, field, snapshots):
             "min": numbers(np.nanmin(masked, axis=1)),
             "max": numbers(np.nanmax(masked, axis=1)),
             "mean": numbers(np.nanmean(masked, axis=1)),
-            "norm": numbers(np.sqrt(np.nansum(masked**2, axis=1))),
+            "norm": [math.hypot(*row[np.isfinite(row)]) for row in v],
             "nonFinite": [int(k) for k in (~finite).sum(axis=1)],
             "firstNonFinite": [int(np.argmin(row)) if not row.all() else -1 for row in finite],
-            "stepChange": [0.0] + [float(k) for k in np.sqrt((difference**2).sum(axis=1))],
+            "stepChange": [0.0] + [math.hypot(*row) for row in difference],
             "changed": int(sum(any(rows[j, i].tobytes() != rows[0, i].tobytes() for j in range(len(rows))) for i in range(rows.shape[1]))),
             "sameAs": [content.index(row) for row in content],
             "rows": [numbers(row) for row in v],

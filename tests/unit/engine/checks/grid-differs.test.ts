@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { CheckSubject } from '../../../../server/engine/checks/check.ts';
 import { gridDiffers } from '../../../../server/engine/checks/grid-differs.ts';
+import { gridOf } from '../../../../server/engine/checks/space-axes.ts';
 import { judge, makeSubject, movingValues, uniform, type AxisPlan } from './survey-factory.ts';
 
 type OtherAxis = CheckSubject['otherGrids'][number]['axes'][number];
@@ -38,6 +39,16 @@ describe('grid/differs', () => {
     ['coordinates unknown here', { name: 'x', nodes: null, count: 21 }, [other(nodes)]],
   ])('is silent for %s', (_name, axis, grids) => {
     expect(found(axis, ...grids)).toEqual([]);
+  });
+
+  it('compares lists of nodes by their coordinates, as gridOf hands them over', () => {
+    const listed = (y: number[]) =>
+      makeSubject({ fields: [{ values: movingValues(3), axes: ['time', 'node'] }], axes: [{ name: 'node', nodes: null, count: 4 }, { name: 'x', nodes: [0, 1, 0, 1] }, { name: 'y', nodes: y }] });
+    const grid = gridOf(listed([0, 0, 1, 1]).survey!);
+    expect(grid.map((axis) => axis.name)).toEqual(['x', 'y', 'node']);
+    const compared = (y: number[]) => judge(gridDiffers, { ...listed(y), otherGrids: [{ archive: 'run-b', axes: grid }] });
+    expect(compared([0, 0, 1, 1])).toEqual([]);
+    expect(compared([0, 0, 1, 2])[0].message).toContain('node 3 of the axis y');
   });
 
   it('does not take a float64 difference for rounding', () => {

@@ -26,6 +26,7 @@ export class MatrixWriter {
   private readonly shape: MatrixShape;
   private readonly hash: Hash = createHash('sha256');
   private written = 0;
+  private appended = 0;
   /** largest |x - float32(x)| met */
   castError = 0;
 
@@ -40,7 +41,7 @@ export class MatrixWriter {
     return writer;
   }
 
-  /** Whole columns, one after the other. */
+  /** Whole columns, one after the other. Errors: 'matrix-invalid' for a value beyond single precision's range, with its place. */
   async append(values: Float64Array): Promise<void> {
     if (this.shape.type === 'float64') return this.put(new Uint8Array(values.buffer, values.byteOffset, values.byteLength));
     const single = Float32Array.from(values);
@@ -48,6 +49,12 @@ export class MatrixWriter {
       const error = Math.abs(values[i] - single[i]);
       if (error > this.castError) this.castError = error;
     }
+    if (this.castError === Infinity) {
+      const at = values.findIndex((value, i) => Number.isFinite(value) && !Number.isFinite(single[i]));
+      const row = at % this.shape.rows, column = this.appended / this.shape.rows + Math.floor(at / this.shape.rows);
+      throw new PennyweightError('matrix-invalid', `The value ${values[at]} at row ${row}, column ${column} is too large for single precision: cast to float64.`, { row, column, value: values[at] });
+    }
+    this.appended += values.length;
     await this.put(new Uint8Array(single.buffer));
   }
 
@@ -91,13 +98,19 @@ export class MatrixReader implements RowTileSource {
     return this.shape.rows;
   }
 
-  /** Rows [from, from + count) of columns [first, first + columns), column after column. */
-  async block(first: number, columns: number, from: number, count: number): Promise<Float64Array> {
+  /** Rows [from, from + count) of columns [first, first + columns), column after column, as they are stored. */
+  async bytes(first: number, columns: number, from: number, count: number): Promise<Uint8Array> {
     const { rows, type } = this.shape, size = bytesOf[type];
     const raw = new Uint8Array(columns * count * size);
     if (count === rows) await readFully(this.handle, raw, this.start + first * rows * size);
     else for (let j = 0; j < columns; j++) await readFully(this.handle, raw.subarray(j * count * size, (j + 1) * count * size), this.start + ((first + j) * rows + from) * size);
-    return type === 'float64' ? new Float64Array(raw.buffer) : Float64Array.from(new Float32Array(raw.buffer));
+    return raw;
+  }
+
+  /** The same in double precision. */
+  async block(first: number, columns: number, from: number, count: number): Promise<Float64Array> {
+    const { buffer } = await this.bytes(first, columns, from, count);
+    return this.shape.type === 'float64' ? new Float64Array(buffer) : Float64Array.from(new Float32Array(buffer));
   }
 
   async *tiles(): AsyncGenerator<RowTile> {
@@ -120,5 +133,24 @@ export class MatrixReader implements RowTileSource {
 
   async close(): Promise<void> {
     await this.handle.close();
+  }
+}
+
+/** Writes a Fortran-ordered NPY in double precision whose rows come tile by tile: `values` of a tile column after column. */
+export async function writeTiles(path: string, rows: number, columns: number, tiles: AsyncIterable<RowTile>): Promise<void> {
+  const handle = await open(path, 'wx');
+  try {
+    const header = npyHeader('float64', [rows, columns], true);
+    await handle.write(header, 0, header.length, 0);
+    for await (const tile of tiles) {
+      for (let k = 0; k < columns; k++) {
+        const part = tile.values.subarray(k * tile.rows, (k + 1) * tile.rows), position = header.length + 8 * (k * rows + tile.from);
+        const bytes = new Uint8Array(part.buffer, part.byteOffset, part.byteLength);
+        for (let done = 0; done < bytes.length; ) done += (await handle.write(bytes, done, bytes.length - done, position + done)).bytesWritten;
+      }
+    }
+    await handle.sync();
+  } finally {
+    await handle.close();
   }
 }
