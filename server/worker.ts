@@ -9,6 +9,7 @@ import { release } from './jobs/release.ts';
 import { openParts } from './parts.ts';
 import { keepDeliveries } from './services/delivery-upkeep.ts';
 import { requeueInterrupted } from './services/job-runs.ts';
+import { removeOrphanedFolders } from './services/orphaned-folders.ts';
 import { closeReaders } from './services/reading-pool.ts';
 
 const upkeepMillis = 60_000;
@@ -32,6 +33,7 @@ async function workOnce(): Promise<void> {
     await releaseQueueLocks(parts.db);
     const interrupted = await requeueInterrupted(parts);
     await parts.storage.clearScratch();
+    await removeOrphanedFolders(parts);
     keep();
     parts.log.info({ interrupted }, 'working');
     await runQueue(parts, { check, build, release }, stop);

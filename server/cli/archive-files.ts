@@ -32,7 +32,8 @@ function isNpy(path: string): boolean {
 function locate(given: string): ArchiveFile {
   const stat = statSync(given, { throwIfNoEntry: false });
   if (!stat) throw wrongUsage(`There is no file ${given}.`);
-  if (!stat.isFile()) throw wrongUsage(`${given} is ${stat.isDirectory() ? 'a folder' : 'no ordinary file'}; name the files themselves.`);
+  if (!stat.isFile())
+    throw wrongUsage(`${given} is ${stat.isDirectory() ? 'a folder' : 'no ordinary file'}; name the files themselves.`);
   return { given, name: basename(given), path: resolve(given), bytes: stat.size };
 }
 
@@ -55,5 +56,7 @@ export function groupArchives(given: string[]): ArchiveFile[][] {
       if (npy) series.set(folder, fresh);
     }
   }
-  return archives.flatMap((group) => (group.some(({ name }) => timeNames.has(parse(name).name.toLowerCase())) ? [group] : group.map((file) => [file])));
+  return archives.flatMap((group) =>
+    group.some(({ name }) => timeNames.has(parse(name).name.toLowerCase())) ? [group] : group.map((file) => [file]),
+  );
 }

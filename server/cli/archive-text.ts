@@ -14,8 +14,14 @@ function readingLines({ reading }: ArchiveReport): string[] {
   const unit = (text: string | null) => (text ? `, ${text}` : '');
   return [
     time ? `  time    ${time.path ?? 'given'}: ${time.count} stamps${unit(time.unit)}` : '  time    none',
-    ...fields.map((field) => `  field   ${field.path} [${field.shape.join(', ')}] ${field.dtype}, axes ${field.axes.join(' ')}${unit(field.unit)}`),
-    ...axes.map((axis) => `  axis    ${axis.name}${axis.path ? ` ${axis.path}` : ''}: ${axis.count}${axis.uniform === null ? '' : axis.uniform ? ', uniform' : ', uneven'}`),
+    ...fields.map(
+      (field) =>
+        `  field   ${field.path} [${field.shape.join(', ')}] ${field.dtype}, axes ${field.axes.join(' ')}${unit(field.unit)}`,
+    ),
+    ...axes.map(
+      (axis) =>
+        `  axis    ${axis.name}${axis.path ? ` ${axis.path}` : ''}: ${axis.count}${axis.uniform === null ? '' : axis.uniform ? ', uniform' : ', uneven'}`,
+    ),
   ];
 }
 

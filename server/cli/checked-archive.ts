@@ -32,12 +32,21 @@ type Read = Pick<CheckSubject, 'survey' | 'failure'>;
 async function surveyOf(archive: IsolatedArchive, choice: ReadingChoice, report: Report): Promise<Read> {
   const reading = await chosenReading(archive, choice);
   try {
-    return { survey: await archive.survey(reading, (done, total) => report(total > 0 ? done / total : 1)), failure: null };
+    return {
+      survey: await archive.survey(reading, (done, total) => report(total > 0 ? done / total : 1)),
+      failure: null,
+    };
   } catch (error) {
     const failure = failureOf(error);
     const survey: Survey = partialSurvey(await archive.contents(), reading);
     if ((error as PennyweightError).code !== 'reading-mismatch') return { survey, failure };
-    return { survey: { ...survey, mismatches: [{ path: failure.path ?? '/', expected: '', actual: '', message: failure.message }] }, failure: null };
+    return {
+      survey: {
+        ...survey,
+        mismatches: [{ path: failure.path ?? '/', expected: '', actual: '', message: failure.message }],
+      },
+      failure: null,
+    };
   }
 }
 
@@ -57,7 +66,12 @@ async function read(files: ArchiveFile[], choice: ReadingChoice, report: Report)
   }
 }
 
-export async function checkArchive(files: ArchiveFile[], choice: ReadingChoice, policy: CheckPolicy, terminal: Terminal): Promise<ArchiveReport> {
+export async function checkArchive(
+  files: ArchiveFile[],
+  choice: ReadingChoice,
+  policy: CheckPolicy,
+  terminal: Terminal,
+): Promise<ArchiveReport> {
   const [first] = files;
   const total = files.reduce((sum, file) => sum + file.bytes, 0);
   const show: Report = (share) => terminal.progress(first.name, share);

@@ -23,5 +23,7 @@ export function fileDigest(path: string, onBytes: (count: number) => void = () =
 /** Of one file its own; of a series that of the lines which sha256sum prints for the files, in their order. */
 export function archiveDigest(files: { name: string; sha256: string }[]): string {
   if (files.length === 1) return files[0].sha256;
-  return createHash('sha256').update(files.map(({ name, sha256 }) => `${sha256}  ${name}\n`).join('')).digest('hex');
+  return createHash('sha256')
+    .update(files.map(({ name, sha256 }) => `${sha256}  ${name}\n`).join(''))
+    .digest('hex');
 }

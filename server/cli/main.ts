@@ -13,7 +13,9 @@ const commands: Record<string, () => Promise<{ command: Command }>> = {
 };
 
 async function overview(): Promise<string> {
-  const rows = await Promise.all(Object.entries(commands).map(async ([name, load]) => `  ${name.padEnd(9)} ${(await load()).command.summary}`));
+  const rows = await Promise.all(
+    Object.entries(commands).map(async ([name, load]) => `  ${name.padEnd(9)} ${(await load()).command.summary}`),
+  );
   return `Usage: pennyweight COMMAND …
 
 ${rows.join('\n')}
@@ -26,7 +28,14 @@ Example: pennyweight check run.h5`;
 
 /** The problem document that the API would answer with. */
 function problemOf({ code, message, details }: PennyweightError): Problem {
-  return { type: `urn:pennyweight:problem:${code}`, title: code, status: statusOf[code], detail: message, code, details };
+  return {
+    type: `urn:pennyweight:problem:${code}`,
+    title: code,
+    status: statusOf[code],
+    detail: message,
+    code,
+    details,
+  };
 }
 
 export async function run(args: string[], terminal: Terminal): Promise<ExitStatus> {
@@ -65,6 +74,8 @@ export async function run(args: string[], terminal: Terminal): Promise<ExitStatu
 /** What pennyweight.js calls. */
 export async function main(args: string[]): Promise<void> {
   // A reader that has seen enough ("| head") ends us quietly.
-  process.stdout.on('error', (error: NodeJS.ErrnoException) => process.exit(error.code === 'EPIPE' ? exitStatus.sound : exitStatus.internal));
+  process.stdout.on('error', (error: NodeJS.ErrnoException) =>
+    process.exit(error.code === 'EPIPE' ? exitStatus.sound : exitStatus.internal),
+  );
   process.exitCode = await run(args, processTerminal());
 }

@@ -33,7 +33,12 @@ export function writeVector(path: string, values: Float64Array): void {
 }
 
 /** Tiles hold rows [from, from + rows) of all columns: value (i, k) at [k * rows + i]. */
-export async function writeMatrix(path: string, rows: number, columns: number, tiles: AsyncIterable<{ from: number; rows: number; values: Float64Array }>): Promise<void> {
+export async function writeMatrix(
+  path: string,
+  rows: number,
+  columns: number,
+  tiles: AsyncIterable<{ from: number; rows: number; values: Float64Array }>,
+): Promise<void> {
   const head = header([rows, columns]);
   const descriptor = openSync(path, 'w');
   try {
@@ -41,7 +46,13 @@ export async function writeMatrix(path: string, rows: number, columns: number, t
     ftruncateSync(descriptor, head.length + rows * columns * 8);
     for await (const tile of tiles) {
       for (let k = 0; k < columns; k++) {
-        writeSync(descriptor, bytesOf(tile.values.subarray(k * tile.rows, (k + 1) * tile.rows)), 0, tile.rows * 8, head.length + (k * rows + tile.from) * 8);
+        writeSync(
+          descriptor,
+          bytesOf(tile.values.subarray(k * tile.rows, (k + 1) * tile.rows)),
+          0,
+          tile.rows * 8,
+          head.length + (k * rows + tile.from) * 8,
+        );
       }
     }
   } finally {

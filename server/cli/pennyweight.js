@@ -21,7 +21,8 @@ function newest(folder) {
 }
 
 async function load() {
-  if (existsSync(compiled) && rooms.every((room) => newest(room) <= statSync(compiled).mtimeMs)) return import(pathToFileURL(compiled).href);
+  if (existsSync(compiled) && rooms.every((room) => newest(room) <= statSync(compiled).mtimeMs))
+    return import(pathToFileURL(compiled).href);
   const { register } = await import('tsx/esm/api');
   register();
   return import(pathToFileURL(join(here, 'main.ts')).href);

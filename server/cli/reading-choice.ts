@@ -29,7 +29,8 @@ interface Values {
 
 export function readingChoice(values: Values): ReadingChoice {
   const { 'time-start': start, 'time-step': step } = values;
-  if ((start === undefined) !== (step === undefined)) throw wrongUsage('--time-start and --time-step are given together.');
+  if ((start === undefined) !== (step === undefined))
+    throw wrongUsage('--time-start and --time-step are given together.');
   if (values.ensemble && start !== undefined) throw wrongUsage('--ensemble and --time-start exclude each other.');
   const reading = values.reading === undefined ? null : readJsonFile('--reading', values.reading, readingSchema);
   if (values.ensemble) return { reading, time: 'ensemble' };

@@ -36,7 +36,11 @@ function inFile(nodes: number, snapshots: number): Columns {
   const needed = nodes * snapshots * 8;
   const { bavail, bsize } = statfsSync(tmpdir());
   if (needed > bavail * bsize) {
-    throw new PennyweightError('limit-exceeded', `The matrix needs ${needed} bytes in ${tmpdir()} and ${bavail * bsize} are free: set TMPDIR to a larger folder.`, { needed, free: bavail * bsize });
+    throw new PennyweightError(
+      'limit-exceeded',
+      `The matrix needs ${needed} bytes in ${tmpdir()} and ${bavail * bsize} are free: set TMPDIR to a larger folder.`,
+      { needed, free: bavail * bsize },
+    );
   }
   const folder = mkdtempSync(join(tmpdir(), 'pennyweight-'));
   const descriptor = openSync(join(folder, 'columns'), 'w+');

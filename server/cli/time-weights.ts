@@ -34,11 +34,24 @@ export interface WeighedRecord {
 }
 
 /** `asked` null: the product chooses. `energies`: ||u_j||_W^2. Errors: 'stamps-invalid' when the stamps do not increase. */
-export function timeWeights({ stamps, stampType, timeWeights: provided, count }: WeighedRecord, asked: TimeRuleId | null, energies: Float64Array): WeightsReport['time'] {
+export function timeWeights(
+  { stamps, stampType, timeWeights: provided, count }: WeighedRecord,
+  asked: TimeRuleId | null,
+  energies: Float64Array,
+): WeightsReport['time'] {
   const rules = stamps ? judgeTimeRules(stamps, stampType, { provided, energies }) : [sampleMean(count)];
   const choice = chooseTimeRule(rules, stamps ? describeSpacing(stamps, stampType) : null);
   if (asked === null) return { chosen: choice.rule, reason: choice.reason, rules };
   const result = rules.find((rule) => rule.id === asked);
-  if (!result) return { chosen: asked, reason: `Refused: the rule "${asked}" needs what this archive does not have; ${choice.rule} would do.`, rules };
-  return { chosen: asked, reason: result.admissible ? 'Asked for.' : `Refused: ${result.why} Choose another rule, such as ${choice.rule}.`, rules };
+  if (!result)
+    return {
+      chosen: asked,
+      reason: `Refused: the rule "${asked}" needs what this archive does not have; ${choice.rule} would do.`,
+      rules,
+    };
+  return {
+    chosen: asked,
+    reason: result.admissible ? 'Asked for.' : `Refused: ${result.why} Choose another rule, such as ${choice.rule}.`,
+    rules,
+  };
 }

@@ -29,7 +29,8 @@ export function parseArguments<T extends NonNullable<ParseArgsConfig['options']>
     return parseArgs({ args: withNegativeNumbers(args, options), options, allowPositionals: true, strict: true });
   } catch (cause) {
     const code = (cause as { code?: unknown }).code;
-    if (typeof code === 'string' && code.startsWith('ERR_PARSE_ARGS')) throw wrongUsage((cause as Error).message.split('. To specify')[0].replace(/\.?$/, '.'));
+    if (typeof code === 'string' && code.startsWith('ERR_PARSE_ARGS'))
+      throw wrongUsage((cause as Error).message.split('. To specify')[0].replace(/\.?$/, '.'));
     throw cause;
   }
 }
@@ -42,6 +43,7 @@ export function parseNumber(option: string, text: string): number {
 
 export function parseCount(option: string, text: string): number {
   const value = parseNumber(option, text);
-  if (!Number.isInteger(value) || value < 1) throw wrongUsage(`${option} takes a whole number from 1 on, not "${text}".`);
+  if (!Number.isInteger(value) || value < 1)
+    throw wrongUsage(`${option} takes a whole number from 1 on, not "${text}".`);
   return value;
 }

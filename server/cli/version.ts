@@ -7,8 +7,11 @@ import { PennyweightError } from '#contract/error.ts';
 export function version(): string {
   for (let folder = dirname(fileURLToPath(import.meta.url)); ; folder = dirname(folder)) {
     const file = join(folder, 'package.json');
-    const description = existsSync(file) ? (JSON.parse(readFileSync(file, 'utf8')) as { name?: string; version?: string }) : {};
+    const description = existsSync(file)
+      ? (JSON.parse(readFileSync(file, 'utf8')) as { name?: string; version?: string })
+      : {};
     if (description.name === 'pennyweight' && description.version) return description.version;
-    if (folder === dirname(folder)) throw new PennyweightError('internal', 'The package.json of Pennyweight is missing.');
+    if (folder === dirname(folder))
+      throw new PennyweightError('internal', 'The package.json of Pennyweight is missing.');
   }
 }

@@ -30,15 +30,26 @@ export interface WeighedArchive {
 function snapshotsIn(contents: ArchiveContents, reading: Reading): number {
   const [field] = reading.fields;
   const [before, after] = field.path.split('{step}');
-  if (after !== undefined) return contents.arrays.filter(({ path }) => path.startsWith(before) && path.endsWith(after)).length;
+  if (after !== undefined)
+    return contents.arrays.filter(({ path }) => path.startsWith(before) && path.endsWith(after)).length;
   const at = field.axes.indexOf('time');
   return at < 0 ? 1 : (contents.arrays.find(({ path }) => path === field.path)?.shape[at] ?? 0);
 }
 
-async function fill(archive: IsolatedArchive, reading: Reading, matrix: SnapshotMatrix, space: Float64Array, onShare: (share: number) => void): Promise<Float64Array> {
+async function fill(
+  archive: IsolatedArchive,
+  reading: Reading,
+  matrix: SnapshotMatrix,
+  space: Float64Array,
+  onShare: (share: number) => void,
+): Promise<Float64Array> {
   const energies = new Float64Array(matrix.snapshots);
   const indices = Uint32Array.from({ length: matrix.snapshots }, (_, j) => j);
-  for await (const { from, count, nodes, values } of archive.snapshots(reading, reading.fields.map((field) => field.name), indices)) {
+  for await (const { from, count, nodes, values } of archive.snapshots(
+    reading,
+    reading.fields.map((field) => field.name),
+    indices,
+  )) {
     for (let k = 0; k < count; k++) {
       const column = values.subarray(k * nodes, (k + 1) * nodes);
       let energy = 0;
@@ -56,7 +67,14 @@ function dataEpsilon(contents: ArchiveContents, reading: Reading): number {
   const units: Partial<Record<ElementType, number>> = { float16: 2 ** -10, float32: 2 ** -23 };
   return Math.max(
     Number.EPSILON,
-    ...reading.fields.map((field) => units[contents.arrays.find(({ path }) => path === field.path || path.endsWith(field.path.split('{step}')[1] ?? path))?.dtype ?? 'float64'] ?? 0),
+    ...reading.fields.map(
+      (field) =>
+        units[
+          contents.arrays.find(
+            ({ path }) => path === field.path || path.endsWith(field.path.split('{step}')[1] ?? path),
+          )?.dtype ?? 'float64'
+        ] ?? 0,
+    ),
   );
 }
 
@@ -73,11 +91,21 @@ async function weighOpened(archive: IsolatedArchive, options: WeighOptions): Pro
   const contents = await archive.contents();
   const reading = await chosenReading(archive, options.choice);
   const [mismatch] = await archive.fits(reading);
-  if (mismatch) throw new PennyweightError('reading-mismatch', `${mismatch.message} Correct the reading; "pennyweight check" shows it.`, { path: mismatch.path });
+  if (mismatch)
+    throw new PennyweightError(
+      'reading-mismatch',
+      `${mismatch.message} Correct the reading; "pennyweight check" shows it.`,
+      { path: mismatch.path },
+    );
   const vectors = await archive.axes(reading);
   const count = vectors.stamps?.length ?? snapshotsIn(contents, reading);
   if (vectors.stamps) assertStamps(vectors.stamps);
-  if (count === 0) throw new PennyweightError('matrix-invalid', `${reading.fields[0].path} holds no snapshot: there is nothing to weigh.`, { path: reading.fields[0].path });
+  if (count === 0)
+    throw new PennyweightError(
+      'matrix-invalid',
+      `${reading.fields[0].path} holds no snapshot: there is nothing to weigh.`,
+      { path: reading.fields[0].path },
+    );
   const space = stateWeights(contents, reading, vectors, options.space);
   const matrix = snapshotMatrix(space.weights.length, count);
   try {
@@ -87,10 +115,18 @@ async function weighOpened(archive: IsolatedArchive, options: WeighOptions): Pro
     const refused = !chosen?.admissible
       ? new PennyweightError('rule-not-admissible', time.reason, { rule: time.chosen })
       : count > mostSnapshots
-        ? new PennyweightError('limit-exceeded', `A spectrum is computed up to ${mostSnapshots} snapshots, and there are ${count}.`, { count })
+        ? new PennyweightError(
+            'limit-exceeded',
+            `A spectrum is computed up to ${mostSnapshots} snapshots, and there are ${count}.`,
+            { count },
+          )
         : null;
     const weights = Float64Array.from(chosen?.weights ?? []);
-    const outcome = refused ?? (await refusable(() => weightedSpectrum(matrix, weights, space.weights, options.algebra, dataEpsilon(contents, reading))));
+    const outcome =
+      refused ??
+      (await refusable(() =>
+        weightedSpectrum(matrix, weights, space.weights, options.algebra, dataEpsilon(contents, reading)),
+      ));
     const decomposition = outcome instanceof PennyweightError ? null : outcome;
     return {
       report: { time, space: space.result, spectrum: decomposition?.result ?? null },

@@ -11,12 +11,18 @@ import type { WeighedArchive } from './weighed-archive.ts';
 export function prepareFolder(folder: string): void {
   const stat = statSync(folder, { throwIfNoEntry: false });
   if (stat && !stat.isDirectory()) throw wrongUsage(`--out: ${folder} is not a folder.`);
-  if (stat && readdirSync(folder).length > 0) throw wrongUsage(`--out: the folder ${folder} is not empty; name a new one.`);
+  if (stat && readdirSync(folder).length > 0)
+    throw wrongUsage(`--out: the folder ${folder} is not empty; name a new one.`);
   mkdirSync(folder, { recursive: true });
 }
 
 /** Returns the names of the files written. */
-export async function writeWeights(folder: string, weighed: WeighedArchive, modes: number, algebra: LinearAlgebra): Promise<string[]> {
+export async function writeWeights(
+  folder: string,
+  weighed: WeighedArchive,
+  modes: number,
+  algebra: LinearAlgebra,
+): Promise<string[]> {
   const written: string[] = [];
   const path = (name: string) => {
     written.push(name);
@@ -29,8 +35,16 @@ export async function writeWeights(folder: string, weighed: WeighedArchive, mode
   writeVector(path('space_weights.npy'), spaceWeights);
   if (!decomposition) return written;
   const { singularValues, result } = decomposition;
-  writeFileSync(path('spectrum.csv'), `k,singular_value,above_floor\n${Array.from(singularValues, (value, k) => `${k + 1},${value},${k < result.resolved}\n`).join('')}`);
+  writeFileSync(
+    path('spectrum.csv'),
+    `k,singular_value,above_floor\n${Array.from(singularValues, (value, k) => `${k + 1},${value},${k < result.resolved}\n`).join('')}`,
+  );
   const count = Math.min(modes, result.resolved);
-  await writeMatrix(path('modes.npy'), matrix.nodes, count, modesOf(matrix, timeWeights, decomposition, count, algebra));
+  await writeMatrix(
+    path('modes.npy'),
+    matrix.nodes,
+    count,
+    modesOf(matrix, timeWeights, decomposition, count, algebra),
+  );
   return written;
 }

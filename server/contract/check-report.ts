@@ -7,7 +7,11 @@ import { numbers, sha256 } from './shape.ts';
 const number = z.number().nullable();
 
 /** Time as read: `path` null when the stamps come from names or attributes of steps, or from a given start and step. */
-export const reportTime = z.object({ path: z.string().nullable(), count: z.number().int(), unit: z.string().nullable() });
+export const reportTime = z.object({
+  path: z.string().nullable(),
+  count: z.number().int(),
+  unit: z.string().nullable(),
+});
 
 export const reportField = z.object({
   path: z.string(),
@@ -40,7 +44,9 @@ export const archiveReport = z.object({
   files: z.array(z.object({ name: z.string(), bytes: z.number(), sha256 })),
   /** null when the container could not be read; then `reading` is null as well */
   format: archiveFormat.nullable(),
-  reading: z.object({ time: reportTime.nullable(), fields: z.array(reportField), axes: z.array(reportAxis) }).nullable(),
+  reading: z
+    .object({ time: reportTime.nullable(), fields: z.array(reportField), axes: z.array(reportAxis) })
+    .nullable(),
   findings: z.array(finding),
   /** by the field's path */
   statistics: z.record(z.string(), reportStatistics),

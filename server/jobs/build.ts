@@ -5,27 +5,25 @@
 import { randomUUID } from 'node:crypto';
 import { rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
-import { PennyweightError } from '#contract/error.ts';
+import { judgePlan } from '../engine/recipe/judge-plan.ts';
 import { mustPlan, rowsOf } from '../engine/recipe/plan.ts';
 import { recordRanges, type RecordState } from '../engine/recipe/record-state.ts';
-import { coefficientsOf, modesOf, weightedSpectrum } from '../engine/spectrum/spectrum.ts';
+import { coefficientsOf, modesOf, weightedSpectrum, type RowTileSource } from '../engine/spectrum/spectrum.ts';
 import { npyFile } from '../engine/release/npy.ts';
 import { linearAlgebra } from '../linalg/choose.ts';
 import type { App } from '../services/context.ts';
-import { archivesOf, recipeSources } from '../services/draft-sources.ts';
-import { draftForBuild, finishBuild } from '../services/draft-builds.ts';
+import { recipeSources } from '../services/draft-sources.ts';
+import { draftToBuild, finishBuild } from '../services/draft-builds.ts';
 import { openArchiveFiles } from '../services/reading-pool.ts';
-import { MatrixReader, MatrixWriter } from '../services/matrix-store.ts';
+import { MatrixReader, MatrixWriter, writeTiles } from '../services/matrix-store.ts';
 import { buildFiles, summarise } from '../engine/release/build-files.ts';
-import type { JobHandle } from './handle.ts';
+import type { JobHandle, JobHandler } from './handle.ts';
 
 const modesKept = 20;
 
-export async function build(app: App, job: JobHandle): Promise<void> {
-  const { draft, recipe } = await draftForBuild(app, job.subjectId);
-  const sources = await recipeSources(app, draft.campaignId, recipe);
-  if (archivesOf(recipe).length !== sources.length) throw new PennyweightError('recipe-invalid', 'An archive of the recipe is withdrawn or not read: choose others.', {});
-  const plan = mustPlan(recipe, sources);
+export const build: JobHandler = async (app, job) => {
+  const { draft, policy, inputs } = await draftToBuild(app, job.subjectId);
+  const plan = mustPlan(draft.recipe, await recipeSources(app, draft.campaignId, draft.recipe));
   const scratch = await app.storage.scratchFolder(`build-${job.id}`);
   try {
     const raw = join(scratch, 'raw.npy');
@@ -34,40 +32,53 @@ export async function build(app: App, job: JobHandle): Promise<void> {
     await rm(raw);
     const reader = await MatrixReader.open(join(scratch, 'matrix.npy'), shapeOf(plan));
     try {
-      report(job, plan, 2, 'spectrum');
+      const watched = watchedTiles(job, plan, reader);
       const algebra = await linearAlgebra();
       const single = plan.type === 'float32' || plan.sources.some(({ survey }) => survey.fields.some((field) => field.dtype === 'float32' && plan.fields.some((each) => each.name === field.name)));
-      const decomposition = await weightedSpectrum(reader, plan.timeWeights!, plan.spaceWeights!, algebra, single ? 2 ** -23 : Number.EPSILON);
-      job.signal.throwIfAborted();
+      const decomposition = await weightedSpectrum(watched, plan.timeWeights!, plan.spaceWeights!, algebra, single ? 2 ** -23 : Number.EPSILON);
       const count = Math.min(modesKept, decomposition.result.resolved);
-      const modes = new Float64Array(rowsOf(plan) * count);
-      for await (const tile of modesOf(reader, plan.timeWeights!, decomposition, count, algebra)) {
-        job.signal.throwIfAborted();
-        for (let k = 0; k < count; k++) modes.set(tile.values.subarray(k * tile.rows, (k + 1) * tile.rows), k * rowsOf(plan) + tile.from);
-      }
+      await writeTiles(join(scratch, 'modes.npy'), rowsOf(plan), count, modesOf(watched, plan.timeWeights!, decomposition, count, algebra));
       const coefficients = coefficientsOf(decomposition, plan.timeWeights!, count);
-      await writeFile(join(scratch, 'modes.npy'), npyFile(modes, [rowsOf(plan), count], true));
       await writeFile(join(scratch, 'coefficients.npy'), npyFile(coefficients, [count, plan.columns.length]));
       const summary = summarise(plan, matrix, decomposition, count);
       for (const [name, content] of buildFiles(plan, mean, decomposition)) await writeFile(join(scratch, name), content);
       job.signal.throwIfAborted();
       const folder = `${draft.id}-${randomUUID().slice(0, 8)}`;
       await app.storage.publish(scratch, 'builds', folder);
-      await finishBuild(app, job.caller, draft.id, { recipeHash: draft.recipeHash, summary, folder, jobId: job.id });
+      await finishBuild(app, job.caller, draft.id, { recipeHash: draft.recipeHash, inputs, summary, findings: judgePlan(plan, policy), folder, jobId: job.id });
     } finally {
       await reader.close();
     }
   } finally {
     await app.storage.discard(scratch);
   }
-}
+};
 
 const shapeOf = (plan: RecordState) => ({ rows: rowsOf(plan), columns: plan.columns.length, type: plan.type });
 
-/** Progress counts the matrix three times: gathered, centred, decomposed. */
-function report(job: JobHandle, plan: RecordState, round: number, phase: string, columns = 0): void {
-  const bytes = 8 * rowsOf(plan);
-  job.report({ done: bytes * (round * plan.columns.length + columns), total: 3 * bytes * plan.columns.length, unit: 'bytes', phase });
+const rounds = ['reading', 'centring and writing', 'spectrum', 'modes'] as const;
+
+/** Progress counts the matrix once a round; `share` of the round is done. */
+function report(job: JobHandle, plan: RecordState, round: (typeof rounds)[number], share: number, what = ''): void {
+  const bytes = 8 * rowsOf(plan) * plan.columns.length;
+  job.report({ done: bytes * (rounds.indexOf(round) + share), total: bytes * rounds.length, unit: 'bytes', phase: round + what });
+}
+
+/** The matrix for the two passes of the decomposition, with progress; a cancel is seen at every tile. */
+function watchedTiles(job: JobHandle, plan: RecordState, reader: MatrixReader): RowTileSource {
+  let pass: 'spectrum' | 'modes' = 'spectrum';
+  return {
+    snapshots: reader.snapshots,
+    nodes: reader.nodes,
+    async *tiles() {
+      for await (const tile of reader.tiles()) {
+        job.signal.throwIfAborted();
+        report(job, plan, pass, tile.from / reader.nodes);
+        yield tile;
+      }
+      pass = 'modes';
+    },
+  };
 }
 
 /** Streams all columns into `path` in double precision; returns what is to be subtracted: n values, or n x runs, or null. */
@@ -93,7 +104,7 @@ async function gather(app: App, job: JobHandle, plan: RecordState, path: string)
             }
           } else if (mean && from === 0 && block.from === 0) mean.set(block.values.subarray(0, rows));
           await writer.append(block.values);
-          report(job, plan, 0, `reading run ${plan.sources[source].run}`, from + block.from + block.count);
+          report(job, plan, 'reading', (from + block.from + block.count) / plan.columns.length, ` run ${plan.sources[source].run}`);
         }
       } finally {
         await archive.close();
@@ -119,7 +130,7 @@ async function centreAndCast(job: JobHandle, plan: RecordState, raw: string, mea
         for (let i = 0; i < rows; i++) values[j * rows + i] -= mean[offset + i];
       }
       await writer.append(values);
-      report(job, plan, 1, 'centring and writing', first + columns);
+      report(job, plan, 'centring and writing', (first + columns) / plan.columns.length);
     }
     return { ...(await writer.close()), castError: writer.castError };
   } catch (cause) {

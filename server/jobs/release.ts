@@ -2,7 +2,7 @@
  * Makes the bag of an approved draft (RFC 8493): hard links of the built arrays, release.h5, texts, manifests; reads every file back and
  * compares its SHA-256; publishes the folder; then one transaction makes the release. It can be repeated from any point.
  */
-import { createHash } from 'node:crypto';
+import { createHash, randomUUID } from 'node:crypto';
 import { createReadStream } from 'node:fs';
 import { link, mkdir, stat, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
@@ -10,15 +10,12 @@ import { PennyweightError } from '#contract/error.ts';
 import { bagDeclaration, bagInfo, manifest, payloadOxum, type BagFile } from '../engine/release/bag.ts';
 import { crate } from '../engine/release/crate.ts';
 import { datasheet } from '../engine/release/datasheet.ts';
-import { citation } from '../engine/release/facts.ts';
 import { writeReleaseHdf5 } from '../reading/release-writer.ts';
-import type { App } from '../services/context.ts';
-import { draftForBuild } from '../services/draft-builds.ts';
 import { findingsOfDraft } from '../services/draft-findings.ts';
-import { finishRelease, nextVersion } from '../services/release-making.ts';
+import { draftToRelease, finishRelease } from '../services/release-making.ts';
 import { releaseFacts } from '../services/release-facts.ts';
 import { MatrixReader } from '../services/matrix-store.ts';
-import type { JobHandle } from './handle.ts';
+import type { JobHandler } from './handle.ts';
 import { releaseArrays, releaseAttributes } from './release-arrays.ts';
 
 const arrays = ['matrix.npy', 'time.npy', 'run_index.npy', 'time_weights.npy', 'space_weights.npy', 'mean.npy', 'split.npy', 'singular_values.npy', 'modes.npy', 'coefficients.npy', 'spectrum.csv', 'weights.json', 'fields.json', 'recipe.json'];
@@ -29,23 +26,24 @@ async function hashOf(path: string): Promise<string> {
   return hash.digest('hex');
 }
 
-export async function release(app: App, job: JobHandle): Promise<void> {
-  const { draft } = await draftForBuild(app, job.subjectId);
-  if (draft.state === 'released') return;
-  if (draft.state !== 'approved' || !draft.build || !draft.buildFolder) throw new PennyweightError('wrong-state', `The draft is ${draft.state}: a release is made of an approved one.`);
-  const version = await nextVersion(app, draft.datasetId);
+export const release: JobHandler = async (app, job) => {
+  const found = await draftToRelease(app, job.subjectId);
+  if (!found) return;
+  const { draft, build, version } = found;
   const facts = await releaseFacts(app, draft, version);
-  const built = app.storage.folder('builds', draft.buildFolder);
+  const built = app.storage.folder('builds', found.buildFolder);
+  const report = (part: number, phase: string) => job.report({ done: part * build.bytes, total: 3 * build.bytes, unit: 'bytes', phase });
   const scratch = await app.storage.scratchFolder(`release-${job.id}`);
   try {
     const data = join(scratch, 'data');
     await mkdir(data);
     for (const name of arrays) await link(join(built, name), join(data, name));
-    job.report({ done: 0, total: 3 * draft.build.bytes, unit: 'bytes', phase: 'writing release.h5' });
-    const reader = await MatrixReader.open(join(built, 'matrix.npy'), draft.build);
+    report(0, 'writing release.h5');
+    const reader = await MatrixReader.open(join(built, 'matrix.npy'), build);
     try {
-      const { rows, columns, type } = draft.build;
-      await writeReleaseHdf5(join(data, 'release.h5'), { rows, columns, type, blocks: reader.columnBlocks() }, await releaseArrays(built, draft.build), releaseAttributes(facts));
+      const { rows, columns, type } = build;
+      const blocks = watched(reader.columnBlocks(), job.signal, (first) => report(first / columns, 'writing release.h5'));
+      await writeReleaseHdf5(join(data, 'release.h5'), { rows, columns, type, blocks }, await releaseArrays(built, build), releaseAttributes(facts));
     } finally {
       await reader.close();
     }
@@ -55,7 +53,7 @@ export async function release(app: App, job: JobHandle): Promise<void> {
     await writeFile(join(data, 'datasheet.md'), sheet);
     job.signal.throwIfAborted();
 
-    job.report({ done: draft.build.bytes, total: 3 * draft.build.bytes, unit: 'bytes', phase: 'checksums' });
+    report(1, 'checksums');
     const payload: BagFile[] = [];
     for (const name of [...arrays, 'release.h5', 'findings.json', 'datasheet.md']) {
       const path = join(data, name);
@@ -63,7 +61,7 @@ export async function release(app: App, job: JobHandle): Promise<void> {
       job.signal.throwIfAborted();
     }
     const matrix = payload.find((file) => file.path === 'data/matrix.npy')!;
-    if (matrix.sha256 !== draft.build.matrixSha256) throw new PennyweightError('checksum-mismatch', 'The built matrix is not the one that was approved: build and submit the draft again.', { expected: draft.build.matrixSha256, actual: matrix.sha256 });
+    if (matrix.sha256 !== build.matrixSha256) throw new PennyweightError('checksum-mismatch', 'The built matrix is not the one that was approved: build and submit the draft again.', { expected: build.matrixSha256, actual: matrix.sha256 });
     const tags: Record<string, string> = {
       'bagit.txt': bagDeclaration,
       'bag-info.txt': bagInfo([['Source-Organization', facts.campaign.title], ['Contact-Name', facts.contact], ['External-Description', `${facts.dataset.title}, release ${version}. ${facts.dataset.description}`], ['External-Identifier', `${facts.campaign.slug}/${facts.dataset.slug}@${version}`], ['Bagging-Date', facts.approvedAt.slice(0, 10)], ['Payload-Oxum', payloadOxum(payload)], ['Bag-Software-Agent', `Pennyweight ${facts.program}`]]),
@@ -79,15 +77,23 @@ export async function release(app: App, job: JobHandle): Promise<void> {
     await writeFile(join(scratch, 'tagmanifest-sha256.txt'), tagManifest);
     const files = [...payload, ...tagFiles, { path: 'tagmanifest-sha256.txt', sha256: createHash('sha256').update(tagManifest).digest('hex'), bytes: Buffer.byteLength(tagManifest) }];
 
-    job.report({ done: 2 * draft.build.bytes, total: 3 * draft.build.bytes, unit: 'bytes', phase: 'reading the bag back' });
+    report(2, 'reading the bag back');
     for (const file of files.filter((each) => each.path !== 'data/matrix.npy')) {
       if ((await hashOf(join(scratch, file.path))) !== file.sha256) throw new PennyweightError('checksum-mismatch', `${file.path} of the bag did not read back as written: the disk is not to be trusted.`, { path: file.path });
       job.signal.throwIfAborted();
     }
-    const folder = `${draft.id}-${version}-${job.id.slice(0, 8)}`;
+    const folder = `${draft.id}-${randomUUID().slice(0, 8)}`;
     await app.storage.publish(scratch, 'releases', folder);
-    await finishRelease(app, job.caller, draft.id, { version, folder, files, datasheet: sheet, citation: citation(facts), waivers: facts.waivers, jobId: job.id });
+    await finishRelease(app, job.caller, draft.id, { version, folder, files, datasheet: sheet, waivers: facts.waivers, jobId: job.id });
   } finally {
     await app.storage.discard(scratch);
+  }
+};
+
+async function* watched<Block extends { first: number }>(blocks: AsyncIterable<Block>, signal: AbortSignal, report: (first: number) => void): AsyncGenerator<Block> {
+  for await (const block of blocks) {
+    signal.throwIfAborted();
+    report(block.first);
+    yield block;
   }
 }

@@ -32,8 +32,8 @@ export async function writeReleaseHdf5(path: string, matrix: ReleaseMatrix, arra
         dataset.create_attribute('axes', 'snapshot, row');
       } else {
         dataset.resize([block.first + block.columns, rows]);
+        // Not followed by refresh(): in h5wasm 0.10.3 that keeps the file open for ever, closed or not.
         dataset.write_slice([[block.first, block.first + block.columns], [0, rows]], values);
-        dataset.refresh();
       }
     }
     const groups = new Set<string>();

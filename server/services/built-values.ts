@@ -1,5 +1,5 @@
 /** Columns, modes and the mean of a built matrix, put back on their grid for the field view; and its beam. */
-import { open, readFile } from 'node:fs/promises';
+import { open } from 'node:fs/promises';
 import { join } from 'node:path';
 import type { BuildSummary } from '#contract/dataset.ts';
 import { PennyweightError } from '#contract/error.ts';
@@ -8,37 +8,44 @@ import type { Beam, FieldValues } from '#contract/shape.ts';
 import { splitCodes } from '../engine/release/build-files.ts';
 import { npyHeader } from '../engine/release/npy.ts';
 import { marksOf } from './archive-record.ts';
+import { builtCodes, builtDoubles, builtFields } from './built-arrays.ts';
+import type { App, Caller } from './context.ts';
+import { findDraft } from './drafts.ts';
 import { fieldValues } from './field-values.ts';
 import { MatrixReader } from './matrix-store.ts';
+import { findRelease, type ReleaseAddress } from './releases.ts';
 
-interface FieldsFile {
-  fields: { name: string; unit: string | null; axes: { name: string; unit: string | null; count: number; nodes: number[] | null }[] }[];
+export interface Built {
+  /** where the arrays lie */
+  folder: string;
+  build: BuildSummary;
 }
 
-/** A small NPY of our own making: the data after its header. */
-async function smallArray(path: string): Promise<Buffer> {
-  const file = await readFile(path);
-  return file.subarray(10 + file.readUInt16LE(8));
+export async function builtOfDraft(app: App, caller: Caller, id: string): Promise<Built> {
+  const { build, buildFolder } = await findDraft(app, caller, id);
+  if (!build || !buildFolder) throw new PennyweightError('wrong-state', 'The matrix of this draft has not been built yet.');
+  return { build, folder: app.storage.folder('builds', buildFolder) };
 }
 
-const doubles = async (path: string) => {
-  const bytes = await smallArray(path);
-  return new Float64Array(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength));
-};
+export async function builtOfRelease(app: App, caller: Caller, address: ReleaseAddress): Promise<Built> {
+  const { row } = await findRelease(app, caller, address);
+  return { build: row.build, folder: join(app.storage.folder('releases', row.folder), 'data') };
+}
 
-export async function builtBeam(folder: string, build: BuildSummary, unit: string | null): Promise<Beam> {
-  const stamps = await doubles(join(folder, 'time.npy')), weights = await doubles(join(folder, 'time_weights.npy'));
-  const codes = new Int8Array(await smallArray(join(folder, 'split.npy')));
-  const names = Object.fromEntries(Object.entries(splitCodes).map(([part, code]) => [code, part])) as Record<number, SplitPart>;
+const partOf = Object.fromEntries(Object.entries(splitCodes).map(([part, code]) => [code, part])) as Record<number, SplitPart>;
+
+export async function builtBeam({ folder, build }: Built): Promise<Beam> {
+  const stamps = await builtDoubles(folder, 'time.npy'), weights = await builtDoubles(folder, 'time_weights.npy');
+  const { time_unit: unit } = await builtFields(folder);
   const timed = stamps.every(Number.isFinite);
   const gaps = timed ? build.records.flatMap(({ from, count }) => marksOf(stamps.slice(from, from + count)).gaps.map((j) => j + from)) : [];
   return {
     stamps: timed ? Array.from(stamps) : null, count: stamps.length, unit, weights: Array.from(weights), rule: build.timeRule, marks: { gaps, duplicates: [], restarts: [] },
-    split: Array.from(codes, (code) => names[code]), records: build.records.map(({ run, from, count }) => ({ label: run, from, count })),
+    split: Array.from(await builtCodes(folder), (code) => partOf[code]), records: build.records.map(({ run, from, count }) => ({ label: run, from, count })),
   };
 }
 
-export async function builtValues(folder: string, build: BuildSummary, asked: { of: 'column' | 'mode' | 'mean'; index: number; field: string }): Promise<FieldValues> {
+export async function builtValues({ folder, build }: Built, asked: { of: 'column' | 'mode' | 'mean'; index: number; field: string }): Promise<FieldValues> {
   const field = build.fields.find((each) => each.name === asked.field);
   if (!field) throw new PennyweightError('not-found', `The matrix has no field "${asked.field}": it has ${build.fields.map((each) => each.name).join(', ')}.`, { field: asked.field });
   const perRun = build.centred === 'weighted-mean-per-run';
@@ -52,7 +59,7 @@ export async function builtValues(folder: string, build: BuildSummary, asked: { 
     } finally {
       await reader.close();
     }
-    const stamp = (await doubles(join(folder, 'time.npy')))[asked.index];
+    const stamp = (await builtDoubles(folder, 'time.npy'))[asked.index];
     time = Number.isFinite(stamp) ? stamp : null;
   } else {
     const columns = asked.of === 'mode' ? build.modes : count;
@@ -66,7 +73,7 @@ export async function builtValues(folder: string, build: BuildSummary, asked: { 
       await handle.close();
     }
   }
-  const grid = (JSON.parse(await readFile(join(folder, 'fields.json'), 'utf8')) as FieldsFile).fields.find((each) => each.name === asked.field)!;
+  const grid = (await builtFields(folder)).fields.find((each) => each.name === asked.field)!;
   const label = asked.of === 'mean' ? `what was subtracted, ${asked.field}` : `${asked.of} ${asked.of === 'mode' ? asked.index + 1 : asked.index}, ${asked.field}`;
   return fieldValues(values, grid.axes.map((axis) => ({ ...axis, nodes: axis.nodes ? Float64Array.from(axis.nodes) : null })), { label, field: asked.field, unit: asked.of === 'mode' ? null : field.unit, time, index: asked.index, count });
 }

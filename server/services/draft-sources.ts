@@ -8,6 +8,7 @@ import { archive, auditLog, run, survey } from '../db/schema/index.ts';
 import { canonicalJson } from './canonical-json.ts';
 import type { App } from './context.ts';
 import { recipeHash } from './recipe-hash.ts';
+import { parametersOf } from './run-parameters.ts';
 import { loadSurvey } from './survey-store.ts';
 
 export function archivesOf(recipe: Recipe): string[] {
@@ -23,7 +24,7 @@ export async function recipeSources(app: App, campaignId: string, recipe: Recipe
   const sources: RecipeSource[] = [];
   for (const row of rows) {
     const surveyed = await loadSurvey(app, row.id);
-    if (surveyed) sources.push({ archive: row.id, run: row.run, parameters: row.parameters, survey: surveyed });
+    if (surveyed) sources.push({ archive: row.id, run: row.run, parameters: parametersOf(row.parameters, surveyed.reading), survey: surveyed });
   }
   return sources;
 }

@@ -1,11 +1,11 @@
 /** Drafts: begun from a recipe, changed, shown with sources and history. */
-import { and, asc, eq, inArray, sql } from 'drizzle-orm';
+import { and, asc, eq, inArray, or, sql } from 'drizzle-orm';
 import type { Draft } from '#contract/dataset.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { Recipe } from '#contract/recipe.ts';
 import { readRecipe } from '../engine/recipe/plan.ts';
 import type { Queryable } from '../db/database.ts';
-import { archive, archiveFile, auditLog, dataset, draft, run } from '../db/schema/index.ts';
+import { archive, archiveFile, auditLog, dataset, draft, release, run } from '../db/schema/index.ts';
 import { findingCounts } from './archives.ts';
 import { recordAudit } from './audit.ts';
 import { authorise, mustSee, type App, type Caller } from './context.ts';
@@ -29,18 +29,19 @@ export async function draftLabel(tx: Queryable, row: DraftRow): Promise<string> 
   return `${parent.title}, draft ${row.number}`;
 }
 
-const events: Record<string, string> = { 'draft.begin': 'began the draft', 'draft.recipe': 'changed the recipe', 'draft.ask-build': 'asked for a build', 'draft.build': 'the matrix was built', 'draft.submit': 'submitted it for review', 'draft.return': 'returned it', 'draft.approve': 'approved it', 'draft.release': 'the release was made' };
+const events: Record<string, string> = { 'draft.begin': 'began the draft', 'draft.recipe': 'changed the recipe', 'draft.ask-build': 'asked for a build', 'draft.build': 'the matrix was built', 'draft.submit': 'submitted it for review', 'draft.return': 'returned it', 'draft.approve': 'approved it', 'release.make': 'the release was made', 'release.withdraw': 'withdrew the release' };
 
 export async function describeDraft(app: App, row: DraftRow): Promise<Draft> {
   const [summary] = await draftSummaries(app, [row]);
   const ids = archivesOf(row.recipe);
   const archives = ids.length === 0 ? [] : await app.db.select({ id: archive.id, name: archive.name, state: archive.state, by: archive.createdBy, run: run.name, sha256: archiveFile.sha256 }).from(archive).innerJoin(run, eq(run.id, archive.runId)).innerJoin(archiveFile, and(eq(archiveFile.archiveId, archive.id), eq(archiveFile.position, 0))).where(and(inArray(archive.id, ids), eq(archive.campaignId, row.campaignId)));
-  const log = await app.db.select().from(auditLog).where(and(eq(auditLog.objectType, 'draft'), eq(auditLog.objectId, row.id))).orderBy(asc(auditLog.seq));
+  const [out] = await app.db.select({ id: release.id }).from(release).where(eq(release.draftId, row.id));
+  const log = await app.db.select().from(auditLog).where(and(or(and(eq(auditLog.objectType, 'draft'), eq(auditLog.objectId, row.id)), out && and(eq(auditLog.objectType, 'release'), eq(auditLog.objectId, out.id))), inArray(auditLog.action, Object.keys(events)))).orderBy(asc(auditLog.seq));
   const counts = await findingCounts(app.db, 'archive', ids);
   const person = await peopleById(app.db, [...row.makers, ...archives.map((each) => each.by)]);
   return {
     ...summary, recipe: row.recipe, version: row.version, stale: row.build !== null && row.buildHash !== (await inputsHash(app.db, row.recipe)), build: row.build, jobId: row.jobId, makers: row.makers.map(person),
-    history: log.map((entry) => ({ at: entry.at.toISOString(), by: { id: entry.actorId ?? '', name: entry.actorName }, what: events[entry.action] ?? entry.action, reason: entry.reason })),
+    history: log.map((entry) => ({ at: entry.at.toISOString(), by: { id: entry.actorId ?? '', name: entry.actorName }, what: events[entry.action], reason: entry.reason })),
     sources: ids.flatMap((id) => {
       const found = archives.find((each) => each.id === id);
       return found ? [{ archive: id, run: found.run, name: found.name, sha256: found.sha256, state: found.state, handedInBy: person(found.by), findings: counts(id) }] : [];

@@ -3,7 +3,7 @@ import type { Preview } from '#contract/dataset.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { Beam } from '#contract/shape.ts';
 import { planRecipe, readRecipe, rowsOf } from '../engine/recipe/plan.ts';
-import { recordRanges, type RecordState } from '../engine/recipe/record-state.ts';
+import { recordRanges, timeUnitOf, type RecordState } from '../engine/recipe/record-state.ts';
 import { chooseTimeRule } from '../engine/quadrature/choose.ts';
 import { judgeTimeRules } from '../engine/quadrature/judge.ts';
 import { describeSpacing } from '../engine/quadrature/spacing.ts';
@@ -16,12 +16,11 @@ const nothing = (problem: Preview['problems'][number]): Preview => ({ valid: fal
 
 /** The beam of a planned record: runs one after the other, each with its own time axis. */
 export function beamOf(plan: RecordState): Beam {
-  const time = plan.sources[0]?.survey.reading.time;
   const ranges = recordRanges(plan);
   const stamped = plan.columns.every((column) => column.time !== null);
   const gaps = ranges.flatMap(({ from, to }) => (stamped ? marksOf(Float64Array.from(plan.columns.slice(from, to), (column) => column.time!)).gaps.map((j) => j + from) : []));
   return {
-    stamps: stamped ? plan.columns.map((column) => column.time!) : null, count: plan.columns.length, unit: time && time.kind !== 'ensemble' ? time.unit : null,
+    stamps: stamped ? plan.columns.map((column) => column.time!) : null, count: plan.columns.length, unit: timeUnitOf(plan),
     weights: plan.timeWeights ? Array.from(plan.timeWeights) : null, rule: plan.timeWeights ? plan.timeRule : null, marks: { gaps, duplicates: [], restarts: [] },
     split: plan.split.length > 0 ? plan.split : null, records: ranges.map(({ source, from, to }) => ({ label: plan.sources[source].run, from, count: to - from })),
   };

@@ -1,15 +1,23 @@
-/** The transaction that makes a release of a finished bag. */
+/** What a release is made of, and the transaction that makes it of a finished bag. */
 import { and, eq, sql } from 'drizzle-orm';
+import type { BuildSummary } from '#contract/dataset.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { BagFile } from '../engine/release/bag.ts';
 import type { ReleaseFacts } from '../engine/release/facts.ts';
-import { dataset, draft, job, release } from '../db/schema/index.ts';
+import { dataset, draft, release } from '../db/schema/index.ts';
 import { recordAudit } from './audit.ts';
 import type { App, Caller } from './context.ts';
+import type { DraftRow } from './draft-states.ts';
+import { mustStillRun } from './job-runs.ts';
 
-export async function nextVersion(app: App, datasetId: string): Promise<number> {
-  const [{ next }] = await app.db.select({ next: sql<number>`coalesce(max(${release.version}), 0)::int + 1` }).from(release).where(eq(release.datasetId, datasetId));
-  return next;
+/** The approved draft and the number that its release will get; null when it is out already. */
+export async function draftToRelease(app: App, id: string): Promise<{ draft: DraftRow; build: BuildSummary; buildFolder: string; version: number } | null> {
+  const [row] = await app.db.select().from(draft).where(eq(draft.id, id));
+  if (!row) throw new PennyweightError('not-found', 'The draft is gone.');
+  if (row.state === 'released') return null;
+  if (row.state !== 'approved' || !row.build || !row.buildFolder) throw new PennyweightError('wrong-state', `The draft is ${row.state}: a release is made of an approved one.`);
+  const [{ next }] = await app.db.select({ next: sql<number>`coalesce(max(${release.version}), 0)::int + 1` }).from(release).where(eq(release.datasetId, row.datasetId));
+  return { draft: row, build: row.build, buildFolder: row.buildFolder, version: next };
 }
 
 export interface MadeRelease {
@@ -17,7 +25,6 @@ export interface MadeRelease {
   folder: string;
   files: BagFile[];
   datasheet: string;
-  citation: string;
   waivers: ReleaseFacts['waivers'];
   jobId: string;
 }
@@ -25,8 +32,7 @@ export interface MadeRelease {
 /** Release row, draft released, the release before superseded, audit row. A second run for the same draft does nothing. */
 export async function finishRelease(app: App, caller: Caller, draftId: string, made: MadeRelease): Promise<void> {
   await app.db.transaction(async (tx) => {
-    const [its] = await tx.select({ state: job.state }).from(job).where(eq(job.id, made.jobId)).for('update');
-    if (its?.state === 'cancelled') throw new PennyweightError('job-cancelled', 'The release was cancelled.');
+    await mustStillRun(tx, made.jobId);
     const [row] = await tx.select().from(draft).where(eq(draft.id, draftId)).for('update');
     if (row.state !== 'approved') return;
     const [parent] = await tx.select().from(dataset).where(eq(dataset.id, row.datasetId)).for('update');

@@ -1,16 +1,16 @@
 /** Submission, return and approval. Four eyes: who made any of it does not decide; the database holds that too. */
-import { and, asc, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNull, ne } from 'drizzle-orm';
 import { about } from '#contract/access.ts';
 import type { Approval, Draft } from '#contract/dataset.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { ResponseOf } from '#contract/route.ts';
 import type { routes } from '#contract/routes.ts';
-import { draft } from '../db/schema/index.ts';
+import { archive, draft } from '../db/schema/index.ts';
 import { planRecipe } from '../engine/recipe/plan.ts';
 import { recordAudit } from './audit.ts';
 import { authorise, type App, type Caller } from './context.ts';
 import { findingsOfDraft, unsettled } from './draft-findings.ts';
-import { inputsHash, recipeSources } from './draft-sources.ts';
+import { archivesOf, inputsHash, recipeSources } from './draft-sources.ts';
 import { mustBeEditable, waitsForDecision, type DraftRow } from './draft-states.ts';
 import { draftSummaries } from './draft-summaries.ts';
 import { draftLabel, findDraft, getDraft } from './drafts.ts';
@@ -18,6 +18,8 @@ import { peopleById } from './people.ts';
 
 /** Refuses while something is open: blockers always, cautions when `cautions` too; and when the recipe no longer holds (a source was withdrawn). */
 async function mustBeSettled(app: App, row: DraftRow, cautions: boolean): Promise<void> {
+  const [gone] = await app.db.select({ name: archive.name, state: archive.state }).from(archive).where(and(inArray(archive.id, archivesOf(row.recipe)), ne(archive.state, 'checked')));
+  if (gone) throw new PennyweightError('open-findings', gone.state === 'checking' ? `The source ${gone.name} is being checked again: wait until that is done.` : `The source ${gone.name} is ${gone.state}: take it out of the recipe.`, { source: gone.name, state: gone.state });
   const [problem] = planRecipe(row.recipe, await recipeSources(app, row.campaignId, row.recipe)).problems;
   if (problem) throw new PennyweightError('recipe-invalid', `${problem.step === null ? 'The recipe' : `Step ${problem.step + 1} of the recipe`} does not hold any more: ${problem.message}`, { step: problem.step });
   const open = unsettled(await findingsOfDraft(app, row)).filter((each) => cautions || each.severity === 'blocker');
@@ -54,11 +56,14 @@ async function mustBeReviewer(app: App, caller: Caller, row: DraftRow): Promise<
   if (!(await waitsForDecision(app.db, row))) throw new PennyweightError('wrong-state', `This draft is ${row.state}: only a submitted one can be decided on.`, { state: row.state });
 }
 
+/** Nobody decided on it since it was read. */
+const asSeen = (row: DraftRow) => and(eq(draft.id, row.id), eq(draft.state, row.state), row.jobId ? eq(draft.jobId, row.jobId) : isNull(draft.jobId));
+
 export async function returnDraft(app: App, caller: Caller, id: string, reason: string): Promise<Draft> {
   const row = await findDraft(app, caller, id);
   await mustBeReviewer(app, caller, row);
   await app.db.transaction(async (tx) => {
-    const changed = await tx.update(draft).set({ state: 'returned', reviewedBy: caller.user.id, reviewedAt: new Date(), reviewReason: reason, updatedAt: new Date() }).where(and(eq(draft.id, id), eq(draft.state, row.state))).returning({ id: draft.id });
+    const changed = await tx.update(draft).set({ state: 'returned', reviewedBy: caller.user.id, reviewedAt: new Date(), reviewReason: reason, updatedAt: new Date() }).where(asSeen(row)).returning({ id: draft.id });
     if (changed.length === 0) throw new PennyweightError('wrong-state', 'Somebody decided on this draft in the meantime: reload it.');
     await recordAudit(tx, caller, { action: 'draft.return', objectType: 'draft', objectId: id, label: await draftLabel(tx, row), campaignId: row.campaignId, before: { state: row.state }, after: { state: 'returned' }, reason });
   });
@@ -73,7 +78,7 @@ export async function approveDraft(app: App, caller: Caller, id: string, approva
   await mustBeSettled(app, row, true);
   await app.db.transaction(async (tx) => {
     const jobId = await app.queue.enqueue(tx, { kind: 'release', subjectType: 'draft', subjectId: id, label: `Release of ${await draftLabel(tx, row)}`, campaignId: row.campaignId, createdBy: caller.user.id });
-    const changed = await tx.update(draft).set({ state: 'approved', reviewedBy: caller.user.id, reviewedAt: new Date(), reviewReason: approval.note || null, approval, jobId, updatedAt: new Date() }).where(and(eq(draft.id, id), eq(draft.state, row.state))).returning({ id: draft.id });
+    const changed = await tx.update(draft).set({ state: 'approved', reviewedBy: caller.user.id, reviewedAt: new Date(), reviewReason: approval.note || null, approval, jobId, updatedAt: new Date() }).where(asSeen(row)).returning({ id: draft.id });
     if (changed.length === 0) throw new PennyweightError('wrong-state', 'Somebody decided on this draft in the meantime: reload it.');
     await recordAudit(tx, caller, { action: 'draft.approve', objectType: 'draft', objectId: id, label: await draftLabel(tx, row), campaignId: row.campaignId, before: { state: row.state }, after: { state: 'approved', matrix: row.build!.matrixSha256, ...approval }, reason: approval.note });
   });

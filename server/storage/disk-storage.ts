@@ -106,6 +106,7 @@ export async function diskStorage(root: string): Promise<ObjectStorage> {
       for (const entry of await readdir(folders.scratch)) await rm(join(folders.scratch, entry), { recursive: true, force: true });
     },
     folder: (kind, name) => join(folders[kind], safeName(name)),
+    folders: (kind) => readdir(folders[kind]),
     async removeFolder(kind, name) {
       // Out of sight in one step, then bit by bit.
       const aside = join(folders.scratch, `removed-${randomUUID()}`);

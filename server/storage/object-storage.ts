@@ -21,7 +21,9 @@ export interface ObjectStorage {
   clearScratch(): Promise<void>;
   /** Absolute path of a published folder. */
   folder(kind: 'builds' | 'releases', name: string): string;
-  removeFolder(kind: 'builds', name: string): Promise<void>;
+  /** Names of the published folders. */
+  folders(kind: 'builds' | 'releases'): Promise<string[]>;
+  removeFolder(kind: 'builds' | 'releases', name: string): Promise<void>;
   /** folder where uploads are received */
   uploads(): string;
   usage(): Promise<{ objects: number; bytes: number; freeBytes: number }>;

@@ -22,6 +22,8 @@ export interface Announced {
 
 /** Gathered before each write: large enough for few system calls, small enough to stay flat in memory. */
 const writeBlock = 2 ** 20;
+/** The disk is kept busy while bytes come in, so that the last one does not wait for all before it to be synced. */
+const syncBlock = 2 ** 26;
 /** On a slow line what came is written at least this often, so that a crash costs little of it. */
 const writeMillis = 500;
 /** Hash states kept of uploads that pause. */
@@ -68,6 +70,13 @@ export class ReceivingStore extends FileStore {
     let at = offset;
     let gathered: Buffer[] = [], gatheredBytes = 0, flushedAt = Date.now();
     let writing: Promise<void> = Promise.resolve();
+    let syncing: Promise<void> | null = null, syncedTo = offset;
+    // A failure here shows again when the whole file is synced.
+    const syncBehind = (): void => {
+      if (syncing || at - syncedTo < syncBlock) return;
+      syncedTo = at;
+      syncing = handle.datasync().catch(() => undefined).finally(() => (syncing = null));
+    };
     const flush = async (): Promise<void> => {
       await writing;
       writing = writeAll(handle, gathered, at, id);
@@ -77,6 +86,7 @@ export class ReceivingStore extends FileStore {
       gathered = [];
       gatheredBytes = 0;
       flushedAt = Date.now();
+      syncBehind();
     };
     try {
       let broken: unknown = null;
@@ -97,6 +107,7 @@ export class ReceivingStore extends FileStore {
       if (broken) throw broken;
       return at;
     } finally {
+      await syncing;
       await handle.close();
     }
   }

@@ -24,7 +24,8 @@ Example: pennyweight audit verify`;
 function notedLink(text: string | undefined): KnownLink | null {
   if (text === undefined) return null;
   const match = /^(\d+):([0-9a-f]{64})$/.exec(text);
-  if (!match || Number(match[1]) < 1) throw wrongUsage('--noted takes the number and the hash of an entry, as in 120:9f86d0….');
+  if (!match || Number(match[1]) < 1)
+    throw wrongUsage('--noted takes the number and the hash of an entry, as in 120:9f86d0….');
   return { seq: Number(match[1]), hash: match[2] };
 }
 
@@ -32,13 +33,23 @@ export const command: Command = {
   summary: 'verify the hash chain of the audit log',
   help,
   async run(args, terminal) {
-    const { values, positionals } = parseArguments(args, { noted: { type: 'string' }, database: { type: 'string' }, json: { type: 'boolean' } });
-    if (positionals.length !== 1 || positionals[0] !== 'verify') throw wrongUsage('Say what to do with the log: pennyweight audit verify.');
+    const { values, positionals } = parseArguments(args, {
+      noted: { type: 'string' },
+      database: { type: 'string' },
+      json: { type: 'boolean' },
+    });
+    if (positionals.length !== 1 || positionals[0] !== 'verify')
+      throw wrongUsage('Say what to do with the log: pennyweight audit verify.');
     const noted = notedLink(values.noted);
     const db = openDatabase(databaseAddress(values.database), { max: 1 });
     try {
       const verdict = await verifyChain(db, noted).catch((cause: unknown) => {
-        throw new PennyweightError('unavailable', `The audit log cannot be read (${reasonOf(cause)}): is the database running, and is it Pennyweight's?`, {}, { cause });
+        throw new PennyweightError(
+          'unavailable',
+          `The audit log cannot be read (${reasonOf(cause)}): is the database running, and is it Pennyweight's?`,
+          {},
+          { cause },
+        );
       });
       if (values.json) terminal.result(JSON.stringify(verdict));
       else {

@@ -30,9 +30,14 @@ export const command: Command = {
   summary: 'check archives: file, reading, time, grid, values',
   help,
   async run(args, terminal) {
-    const { values, positionals } = parseArguments(args, { ...readingOptions, policy: { type: 'string' }, json: { type: 'boolean' } });
+    const { values, positionals } = parseArguments(args, {
+      ...readingOptions,
+      policy: { type: 'string' },
+      json: { type: 'boolean' },
+    });
     const choice = readingChoice(values);
-    const policy = values.policy === undefined ? { thresholds: {} } : readJsonFile('--policy', values.policy, checkPolicy);
+    const policy =
+      values.policy === undefined ? { thresholds: {} } : readJsonFile('--policy', values.policy, checkPolicy);
     const [unknown] = unknownThresholds(catalogue, policy);
     if (unknown) throw wrongUsage(unknown);
     const report: CheckReport = { pennyweight: version(), archives: [] };

@@ -52,16 +52,28 @@ export const command: Command = {
       out: { type: 'string' },
     });
     const choice = readingChoice(values);
-    const rule = values.rule === undefined || values.rule === 'auto' ? null : offered('--rule', values.rule, timeRuleIds, offeredTime);
+    const rule =
+      values.rule === undefined || values.rule === 'auto'
+        ? null
+        : offered('--rule', values.rule, timeRuleIds, offeredTime);
     const space = values.space === undefined ? null : offered('--space', values.space, spaceRuleIds, offeredSpace);
     const rank = values.rank === undefined ? defaultRank : parseCount('--rank', values.rank);
     const [files, ...others] = groupArchives(positionals);
-    if (others.length > 0) throw wrongUsage('One archive at a time: several files are one archive only when they are NPY files with a time vector among them.');
+    if (others.length > 0)
+      throw wrongUsage(
+        'One archive at a time: several files are one archive only when they are NPY files with a time vector among them.',
+      );
     if (values.out !== undefined) prepareFolder(values.out);
 
     const [{ name }] = files;
     const algebra = await linearAlgebra();
-    const weighed = await weighArchive(files, { choice, rule, space, algebra, onShare: (share) => terminal.progress(name, share) });
+    const weighed = await weighArchive(files, {
+      choice,
+      rule,
+      space,
+      algebra,
+      onShare: (share) => terminal.progress(name, share),
+    });
     try {
       terminal.progress(name, null);
       const written = values.out === undefined ? [] : await writeWeights(values.out, weighed, rank, algebra);
@@ -73,6 +85,8 @@ export const command: Command = {
     const { refusal } = weighed;
     if (!refusal) return exitStatus.sound;
     terminal.message(refusal.message);
-    return refusal.code === 'matrix-invalid' || refusal.code === 'weights-invalid' ? exitStatus.blocker : exitStatus.caution;
+    return refusal.code === 'matrix-invalid' || refusal.code === 'weights-invalid'
+      ? exitStatus.blocker
+      : exitStatus.caution;
   },
 };

@@ -21,7 +21,10 @@ export interface CheckSubject {
   /** parameter values of the run, from the archive or given by the contributor */
   parameters: Record<string, number>;
   /** grids of the other archives of the same campaign or dataset, to compare with; empty when alone */
-  otherGrids: { archive: string; axes: { name: string; nodes: Float64Array | null; count: number; dtype?: ElementType | null }[] }[];
+  otherGrids: {
+    archive: string;
+    axes: { name: string; nodes: Float64Array | null; count: number; dtype?: ElementType | null }[];
+  }[];
   /** the time rule that is to be used, when chosen */
   timeRule: TimeRuleId | null;
   /** id of the archive, for the recipe's drop lists; without one the nil UUID stands for "the archive of this finding" */

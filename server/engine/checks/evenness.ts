@@ -25,15 +25,18 @@ export function evennessOf(stamps: Float64Array, dtype: ElementType | null): Eve
   const unit = 2 ** (Math.floor(Math.log2(largest)) - 23);
   const single = dtype === 'float32' || stamps.every((stamp) => Math.fround(stamp) === stamp);
   const drift = Math.max(spacing.hMax - spacing.hMedian, spacing.hMedian - spacing.hMin);
-  if (single && unit <= spacing.hMedian / 4 && drift <= unit) return { spacing, verdict: 'rounded', explainedBy: 'additions in float32' };
+  if (single && unit <= spacing.hMedian / 4 && drift <= unit)
+    return { spacing, verdict: 'rounded', explainedBy: 'additions in float32' };
   const digits = manyDigits(stamps);
-  if (digits !== null && spacing.deviation <= 1.01 * 10 ** (Math.floor(Math.log10(largest)) - digits + 1)) return { spacing, verdict: 'rounded', explainedBy: `${digits} digits` };
+  if (digits !== null && spacing.deviation <= 1.01 * 10 ** (Math.floor(Math.log10(largest)) - digits + 1))
+    return { spacing, verdict: 'rounded', explainedBy: `${digits} digits` };
   return { spacing, verdict: 'uneven', explainedBy: null };
 }
 
 /** Fewest significant digits, 10 to 15, that write every stamp; null when none do. 15 always survive a double (DBL_DIG). */
 function manyDigits(stamps: Float64Array): number | null {
-  for (let digits = 10; digits <= 15; digits++) if (stamps.every((stamp) => Number(stamp.toPrecision(digits)) === stamp)) return digits;
+  for (let digits = 10; digits <= 15; digits++)
+    if (stamps.every((stamp) => Number(stamp.toPrecision(digits)) === stamp)) return digits;
   return null;
 }
 

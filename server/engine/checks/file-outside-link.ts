@@ -21,12 +21,18 @@ export const fileOutsideLink: Check = {
       if (those.length === 0) return [];
       const [{ path, target }] = those;
       const [one, many] = words[kind];
-      const subject = those.length === 1 ? `${path} is ${one} to ${target}` : `${those.length} ${many} point out of the archive, first ${path} to ${target}`;
+      const subject =
+        those.length === 1
+          ? `${path} is ${one} to ${target}`
+          : `${those.length} ${many} point out of the archive, first ${path} to ${target}`;
       return [
         {
           path,
           message: `${subject}, which is outside the archive and is never followed: pack the data themselves into the file (for HDF5 with h5repack or by copying the data set) and upload again.`,
-          evidence: { count: those.length, links: those.slice(0, evidenceLength).map((link) => `${link.path} -> ${link.target}`) },
+          evidence: {
+            count: those.length,
+            links: those.slice(0, evidenceLength).map((link) => `${link.path} -> ${link.target}`),
+          },
           remedy: null,
         },
       ];

@@ -37,7 +37,11 @@ export const fileUnwrittenData: Check = {
   title: 'Everything that the shapes promise was written',
   source: 'HDF5 reference manual, H5Dget_storage_size and H5Pset_fill_value; tail rule: common practice, no source',
   thresholds: {
-    trailingSnapshots: { default: 1, unit: 'snapshots', meaning: 'fewest snapshots of nothing but the fill value at the end of the record that count as unwritten' },
+    trailingSnapshots: {
+      default: 1,
+      unit: 'snapshots',
+      meaning: 'fewest snapshots of nothing but the fill value at the end of the record that count as unwritten',
+    },
   },
   judge(subject, { trailingSnapshots }) {
     const { survey } = subject;
@@ -46,12 +50,16 @@ export const fileUnwrittenData: Check = {
     const m = snapshotCount(survey);
     const judgements = shortArrays(survey).map(({ path, held, needed }): Judgement => {
       const field = survey.fields.find((candidate) => candidate.path === path);
-      const indices = field && field.trailingFill > 0 && field.trailingFill < m ? tailIndices(survey, field.trailingFill) : [];
+      const indices =
+        field && field.trailingFill > 0 && field.trailingFill < m ? tailIndices(survey, field.trailingFill) : [];
       return {
         path,
         message: `${path} holds ${held} of the ${needed} values that its shape promises; the rest was never written and would be read as the fill value${indices.length > 0 ? `, from snapshot ${indices[0]} on` : ''}: trim the record to what was written or upload the complete file.`,
         evidence: { ...evidenceOf(indices, survey.stamps), count: needed - held, held, needed },
-        remedy: indices.length > 0 ? dropSnapshots(subject, indices, `Drop ${theCounted(indices.length, 'unwritten snapshot')} at the end.`) : null,
+        remedy:
+          indices.length > 0
+            ? dropSnapshots(subject, indices, `Drop ${theCounted(indices.length, 'unwritten snapshot')} at the end.`)
+            : null,
       };
     });
     const told = survey.fields.some((field) => judgements.some(({ path }) => path === field.path));

@@ -19,14 +19,20 @@ export interface Grid {
 
 function storedRoundOff(axis: Grid): number {
   if (axis.dtype) return roundOff(axis.dtype);
-  return axis.nodes && axis.nodes.every((value) => Math.fround(value) === value) ? roundOff('float32') : roundOff('float64');
+  return axis.nodes && axis.nodes.every((value) => Math.fround(value) === value)
+    ? roundOff('float32')
+    : roundOff('float64');
 }
 
 /** One clause that says how they differ, or null when they are the same. */
 function difference(ours: Grid, theirs: Grid): string | null {
-  if (ours.count !== theirs.count) return `the axis ${ours.name} has ${ours.count} nodes here and ${theirs.count} there`;
+  if (ours.count !== theirs.count)
+    return `the axis ${ours.name} has ${ours.count} nodes here and ${theirs.count} there`;
   if (!ours.nodes || !theirs.nodes) return null;
-  const scale = [ours.nodes, theirs.nodes].reduce((most, nodes) => nodes.reduce((a, value) => Math.max(a, Math.abs(value)), most), 0);
+  const scale = [ours.nodes, theirs.nodes].reduce(
+    (most, nodes) => nodes.reduce((a, value) => Math.max(a, Math.abs(value)), most),
+    0,
+  );
   const tolerance = 2 * Math.max(storedRoundOff(ours), storedRoundOff(theirs)) * scale;
   for (let i = 0; i < ours.nodes.length; i++) {
     if (Math.abs(ours.nodes[i] - theirs.nodes[i]) > tolerance) {
@@ -42,7 +48,10 @@ export function compareGrids(ours: Grid[], theirs: Grid[]): string | null {
     const clause = other ? difference(axis, other) : `the axis ${axis.name} is missing there`;
     if (clause) return clause;
   }
-  const extra = theirs.find((candidate) => candidate.name !== 'component' && candidate.name !== 'time' && !ours.some((axis) => axis.name === candidate.name));
+  const extra = theirs.find(
+    (candidate) =>
+      candidate.name !== 'component' && candidate.name !== 'time' && !ours.some((axis) => axis.name === candidate.name),
+  );
   return extra ? `the axis ${extra.name} exists only there` : null;
 }
 
@@ -66,7 +75,11 @@ export const gridDiffers: Check = {
       {
         path: null,
         message: `The grid differs from that of ${differing.length === 1 ? archive : `${counted(differing.length, 'other archive')}, first ${archive}`}: ${clause}; regrid outside, or leave the archive out.`,
-        evidence: { count: differing.length, archives: differing.slice(0, evidenceLength).map((other) => other.archive), difference: clause },
+        evidence: {
+          count: differing.length,
+          archives: differing.slice(0, evidenceLength).map((other) => other.archive),
+          difference: clause,
+        },
         remedy: null,
       },
     ];

@@ -11,7 +11,9 @@ import { counted } from './quantity.ts';
 import { coordinateText, gridAxes, nodeCoordinates, roundOff } from './space-axes.ts';
 
 function coincidentOnAxis(axis: SurveyAxis, nodes: Float64Array, share: number): number[] {
-  const distances = Float64Array.from({ length: Math.max(0, nodes.length - 1) }, (_, i) => Math.abs(nodes[i + 1] - nodes[i]));
+  const distances = Float64Array.from({ length: Math.max(0, nodes.length - 1) }, (_, i) =>
+    Math.abs(nodes[i + 1] - nodes[i]),
+  );
   const usual = Float64Array.from(distances).sort()[distances.length >> 1] ?? 0;
   const found: number[] = [];
   for (let i = 0; i < distances.length; i++) {
@@ -54,7 +56,11 @@ export const gridDuplicateNodes: Check = {
   title: 'No two nodes coincide',
   source: 'common practice, no source',
   thresholds: {
-    share: { default: 1e-3, unit: 'median spacing', meaning: 'nodes apart by round-off only coincide when their distance is below this share of the usual spacing' },
+    share: {
+      default: 1e-3,
+      unit: 'median spacing',
+      meaning: 'nodes apart by round-off only coincide when their distance is below this share of the usual spacing',
+    },
   },
   judge({ survey }, { share }) {
     if (!survey) return [];

@@ -16,7 +16,8 @@ export const gridMissing: Check = {
     const unknown = gridAxes(survey).filter((axis) => axis.count > 1 && !axis.nodes && !axis.edges);
     const node = survey.axes.find((axis) => axis.name === 'node');
     const usesNode = survey.reading.fields.some((field) => field.axes.includes('node'));
-    if (node && usesNode && node.count > 1 && !node.nodes && !node.edges && nodeCoordinates(survey).length === 0) unknown.push(node);
+    if (node && usesNode && node.count > 1 && !node.nodes && !node.edges && nodeCoordinates(survey).length === 0)
+      unknown.push(node);
     if (unknown.length === 0) return [];
     const names = unknown.map((axis) => axis.name);
     return [

@@ -67,9 +67,14 @@ export const catalogue: Check[] = [
  */
 export function judgeAll(subject: CheckSubject, policy: CheckPolicy): Finding[] {
   const { trailingSnapshots } = thresholdsOf(fileUnwrittenData, policy);
-  const written: CheckSubject = { ...subject, unwritten: subject.survey ? unwrittenTail(subject.survey, trailingSnapshots) : 0 };
+  const written: CheckSubject = {
+    ...subject,
+    unwritten: subject.survey ? unwrittenTail(subject.survey, trailingSnapshots) : 0,
+  };
   const findings = catalogue.flatMap((check) =>
-    check.judge(written, thresholdsOf(check, policy)).map((judgement): Finding => ({ id: check.id, severity: check.severity, ...judgement })),
+    check
+      .judge(written, thresholdsOf(check, policy))
+      .map((judgement): Finding => ({ id: check.id, severity: check.severity, ...judgement })),
   );
   return findings.sort((a, b) => severities.indexOf(a.severity) - severities.indexOf(b.severity));
 }

@@ -13,7 +13,12 @@ export const paramMissing: Check = {
     return demands.parameters
       .filter(({ name }) => !Object.hasOwn(parameters, name) || !Number.isFinite(parameters[name]))
       .map(({ name, unit, min, max }) => {
-        const range = min !== null && max !== null ? `, between ${withUnit(`${min} and ${max}`, unit)}` : unit ? `, in ${unit}` : '';
+        const range =
+          min !== null && max !== null
+            ? `, between ${withUnit(`${min} and ${max}`, unit)}`
+            : unit
+              ? `, in ${unit}`
+              : '';
         return {
           path: null,
           message: `The parameter ${name} has no value for this run; give it${range}.`,

@@ -4,7 +4,9 @@ import type { Check } from './check.ts';
 
 export function thresholdsOf(check: Check, policy: CheckPolicy): Record<string, number> {
   const given = policy.thresholds[check.id] ?? {};
-  return Object.fromEntries(Object.entries(check.thresholds).map(([name, threshold]) => [name, given[name] ?? threshold.default]));
+  return Object.fromEntries(
+    Object.entries(check.thresholds).map(([name, threshold]) => [name, given[name] ?? threshold.default]),
+  );
 }
 
 /** What a policy names that no check of the catalogue has: one sentence each, empty when it fits. */
@@ -15,6 +17,8 @@ export function unknownThresholds(catalogue: Check[], policy: CheckPolicy): stri
     const known = Object.keys(check.thresholds);
     return Object.keys(thresholds)
       .filter((name) => !known.includes(name))
-      .map((name) => `The check ${id} has no threshold "${name}"; it has ${known.length > 0 ? known.join(', ') : 'none'}.`);
+      .map(
+        (name) => `The check ${id} has no threshold "${name}"; it has ${known.length > 0 ? known.join(', ') : 'none'}.`,
+      );
   });
 }

@@ -17,18 +17,40 @@ function judgeField(survey: Survey, field: FieldReading): Judgement[] {
   const faults: Judgement[] = [];
   const times = field.axes.filter((axis) => axis === 'time').length;
   const perStep = field.path.includes('{step}');
-  if (times > 1) faults.push(judgement(field.path, `The reading names ${times} axes of ${field.path} as time; name exactly one.`, { count: times }));
+  if (times > 1)
+    faults.push(
+      judgement(field.path, `The reading names ${times} axes of ${field.path} as time; name exactly one.`, {
+        count: times,
+      }),
+    );
   if (times === 0 && !perStep && survey.reading.layout !== 'single-snapshot' && snapshotCount(survey) > 1) {
-    faults.push(judgement(field.path, `No axis of ${field.path} is assigned to time although the record has ${snapshotCount(survey)} snapshots; say which axis it is, or leave the array out of the fields.`));
+    faults.push(
+      judgement(
+        field.path,
+        `No axis of ${field.path} is assigned to time although the record has ${snapshotCount(survey)} snapshots; say which axis it is, or leave the array out of the fields.`,
+      ),
+    );
   }
   const described = new Set(survey.reading.axes.map((axis) => axis.name));
   const missing = field.axes.filter((axis) => axis !== 'time' && axis !== 'component' && !described.has(axis));
   if (missing.length > 0) {
-    faults.push(judgement(field.path, `The reading does not describe the axis ${missing.join(', ')} of ${field.path}; complete it.`, { axes: missing }));
+    faults.push(
+      judgement(
+        field.path,
+        `The reading does not describe the axis ${missing.join(', ')} of ${field.path}; complete it.`,
+        { axes: missing },
+      ),
+    );
   }
   if (surveyed && (surveyed.snapshots === 0 || surveyed.nodes === 0)) {
     const what = surveyed.snapshots === 0 ? 'no snapshot' : 'no value in a snapshot';
-    faults.push(judgement(field.path, `${field.path} holds ${what}: an axis has length 0; choose another array or upload the complete file.`, { snapshots: surveyed.snapshots, nodes: surveyed.nodes }));
+    faults.push(
+      judgement(
+        field.path,
+        `${field.path} holds ${what}: an axis has length 0; choose another array or upload the complete file.`,
+        { snapshots: surveyed.snapshots, nodes: surveyed.nodes },
+      ),
+    );
   }
   return faults;
 }
@@ -47,16 +69,28 @@ export const readingIncomplete: Check = {
     // A link out of the archive or damage is the cause then, and is told by its own check.
     const causeTold = survey.contents.outsideLinks.length > 0 || survey.contents.damaged.length > 0;
     if (fields.length === 0 && !causeTold) {
-      faults.unshift(judgement(null, `No array of the archive is assigned as a field (${survey.contents.arrays.length} found); say in the reading which arrays are fields.`, { count: survey.contents.arrays.length }));
+      faults.unshift(
+        judgement(
+          null,
+          `No array of the archive is assigned as a field (${survey.contents.arrays.length} found); say in the reading which arrays are fields.`,
+          { count: survey.contents.arrays.length },
+        ),
+      );
     }
     const names = new Set(fields.map((field) => field.name));
-    const wanting = demands.fields.filter((demand) => demand.required && !names.has(demand.name)).map((demand) => demand.name);
+    const wanting = demands.fields
+      .filter((demand) => demand.required && !names.has(demand.name))
+      .map((demand) => demand.name);
     if (wanting.length > 0) {
       faults.push(
-        judgement(null, `The campaign needs the field${wanting.length > 1 ? 's' : ''} ${wanting.join(', ')}, which the reading does not assign (it has ${[...names].join(', ') || 'none'}); name the array that holds ${wanting.length > 1 ? 'each' : 'it'}.`, {
-          count: wanting.length,
-          fields: wanting.slice(0, 20),
-        }),
+        judgement(
+          null,
+          `The campaign needs the field${wanting.length > 1 ? 's' : ''} ${wanting.join(', ')}, which the reading does not assign (it has ${[...names].join(', ') || 'none'}); name the array that holds ${wanting.length > 1 ? 'each' : 'it'}.`,
+          {
+            count: wanting.length,
+            fields: wanting.slice(0, 20),
+          },
+        ),
       );
     }
     return faults;

@@ -9,7 +9,9 @@ import { snapshotCount } from './written-part.ts';
 
 function toldElsewhere({ contents, reading }: Survey, path: string): boolean {
   if (path === '/') return reading.fields.length === 0;
-  return contents.damaged.some((damage) => damage.path === path) || contents.outsideLinks.some((link) => link.path === path);
+  return (
+    contents.damaged.some((damage) => damage.path === path) || contents.outsideLinks.some((link) => link.path === path)
+  );
 }
 
 function withAdvice(message: string): string {
@@ -26,7 +28,12 @@ export const readingShapeMismatch: Check = {
     if (!survey) return [];
     const judgements = survey.mismatches
       .filter(({ path }) => !toldElsewhere(survey, path))
-      .map(({ path, expected, actual, message }): Judgement => ({ path, message: withAdvice(message), evidence: { expected, actual }, remedy: null }));
+      .map(({ path, expected, actual, message }): Judgement => ({
+        path,
+        message: withAdvice(message),
+        evidence: { expected, actual },
+        remedy: null,
+      }));
     const told = new Set(survey.mismatches.map((mismatch) => mismatch.path));
     const m = snapshotCount(survey);
     if (survey.stamps && survey.stamps.length !== m && survey.fields.length > 0 && !survey.mismatches.length) {

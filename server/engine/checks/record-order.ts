@@ -80,7 +80,8 @@ function isRestart(chain: number[], t: Float64Array, finite: number[], position:
   if (next !== null && next > top) {
     const at = lowerBound(chain, t, start);
     const leaped = chain.length - at - (t[chain[at]] === start ? 1 : 0);
-    const usual = position + 2 < finite.length ? t[finite[position + 2]] - next : at > 0 ? t[chain[at]] - t[chain[at - 1]] : 0;
+    const usual =
+      position + 2 < finite.length ? t[finite[position + 2]] - next : at > 0 ? t[chain[at]] - t[chain[at - 1]] : 0;
     if (leaped >= 1 && next - start > holeRatio * usual) return false;
   }
   let balance = 0;
@@ -152,7 +153,13 @@ export function describeOrder(t: Float64Array, unit = 0): RecordOrder {
         const top = t[chain[chain.length - 1]];
         let end = i;
         while (end + 1 < finite.length && t[finite[end + 1]] >= t[finite[end]] && t[finite[end]] < top) end++;
-        restarts.push({ index: j, from: t[finite[i - 1]], to: t[j], overlapped: chain.length - keep, overtakes: t[finite[end]] >= top });
+        restarts.push({
+          index: j,
+          from: t[finite[i - 1]],
+          to: t[j],
+          overlapped: chain.length - keep,
+          overtakes: t[finite[end]] >= top,
+        });
         chain.length = keep;
       } else {
         backward.push(j);

@@ -7,10 +7,17 @@ import type { CheckSubject } from './check.ts';
 export const thisArchive = '00000000-0000-0000-0000-000000000000';
 
 export function dropSnapshots(subject: CheckSubject, indices: ArrayLike<number>, sentence: string): Remedy {
-  return { step: 'order', parameters: { drop: [{ archive: subject.archive ?? thisArchive, indices: Array.from(indices) }] }, sentence };
+  return {
+    step: 'order',
+    parameters: { drop: [{ archive: subject.archive ?? thisArchive, indices: Array.from(indices) }] },
+    sentence,
+  };
 }
 
-export function orderRecord(parameters: { sort?: true; restart?: 'keep-later' | 'keep-earlier'; dropDuplicates?: true; dropFrozen?: true }, sentence: string): Remedy {
+export function orderRecord(
+  parameters: { sort?: true; restart?: 'keep-later' | 'keep-earlier'; dropDuplicates?: true; dropFrozen?: true },
+  sentence: string,
+): Remedy {
   return { step: 'order', parameters, sentence };
 }
 

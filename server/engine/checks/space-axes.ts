@@ -20,7 +20,9 @@ export function nodeCoordinates(survey: Survey): SurveyAxis[] {
 }
 
 /** Grid of an archive in the form in which others are compared with it (CheckSubject.otherGrids). */
-export function gridOf(survey: Survey): { name: string; nodes: Float64Array | null; count: number; dtype: ElementType | null }[] {
+export function gridOf(
+  survey: Survey,
+): { name: string; nodes: Float64Array | null; count: number; dtype: ElementType | null }[] {
   const node = survey.axes.find((axis) => axis.name === 'node');
   const axes = new Set([...gridAxes(survey), ...nodeCoordinates(survey), ...(node ? [node] : [])]);
   return [...axes].map(({ name, nodes, count, dtype }) => ({ name, nodes, count, dtype }));
@@ -50,7 +52,8 @@ export function placeText(survey: Survey, fieldPath: string, index: number): str
     const position = rest % count;
     rest = Math.floor(rest / count);
     if (axis?.nodes && position < axis.nodes.length) places.unshift(coordinateText(axis, axis.nodes[position]));
-    else if (name === 'node') places.unshift(...nodeCoordinates(survey).map((of) => coordinateText(of, of.nodes![position])));
+    else if (name === 'node')
+      places.unshift(...nodeCoordinates(survey).map((of) => coordinateText(of, of.nodes![position])));
   }
   return rest === 0 ? places.join(', ') : '';
 }

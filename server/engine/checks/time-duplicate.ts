@@ -24,7 +24,9 @@ export const timeDuplicate: Check = {
     const { duplicates, nearlyEqual } = order;
     if (duplicates.length === 0) return [];
     const fields = survey.fields.filter((field) => field.hash.length >= stamps.length);
-    const differing = duplicates.filter((j) => j > 0 && sameTime(survey, j, j - 1) && fields.some((field) => field.hash[j] !== field.hash[j - 1])).length;
+    const differing = duplicates.filter(
+      (j) => j > 0 && sameTime(survey, j, j - 1) && fields.some((field) => field.hash[j] !== field.hash[j - 1]),
+    ).length;
     const [first] = duplicates;
     const advice =
       differing === 0

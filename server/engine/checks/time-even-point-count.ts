@@ -11,7 +11,8 @@ export const timeEvenPointCount: Check = {
   id: 'time/even-point-count',
   severity: 'note',
   title: 'The number of snapshots suits Simpson’s rule',
-  source: 'Abramowitz & Stegun 25.4.5-25.4.6; K. V. Cartwright, J. Math. Sci. Math. Educ. 12(2), 2017, 1-9 (correction)',
+  source:
+    'Abramowitz & Stegun 25.4.5-25.4.6; K. V. Cartwright, J. Math. Sci. Math. Educ. 12(2), 2017, 1-9 (correction)',
   thresholds: {},
   judge(subject) {
     const { survey } = subject;

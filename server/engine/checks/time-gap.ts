@@ -24,7 +24,8 @@ function median(values: number[]): number {
 /** Nearest first: the intervals of one side. */
 function side(intervals: Float64Array, i: number, direction: 1 | -1): number[] {
   const found: number[] = [];
-  for (let k = i + direction; k >= 0 && k < intervals.length && found.length < reach; k += direction) found.push(intervals[k]);
+  for (let k = i + direction; k >= 0 && k < intervals.length && found.length < reach; k += direction)
+    found.push(intervals[k]);
   return found;
 }
 
@@ -45,7 +46,12 @@ function extrapolated(neighbours: number[]): number {
 }
 
 /** Positions i of the intervals [t_i, t_{i+1}] that are gaps, with what is usual there. */
-export function findGaps(stamps: Float64Array, ratio: number, growth: number, share: number): { position: number; usual: number }[] {
+export function findGaps(
+  stamps: Float64Array,
+  ratio: number,
+  growth: number,
+  share: number,
+): { position: number; usual: number }[] {
   const intervals = Float64Array.from({ length: Math.max(0, stamps.length - 1) }, (_, i) => stamps[i + 1] - stamps[i]);
   if (intervals.length < 3) return [];
   const gaps: { position: number; usual: number }[] = [];
@@ -56,15 +62,24 @@ export function findGaps(stamps: Float64Array, ratio: number, growth: number, sh
     const before = side(intervals, i, -1);
     const after = side(intervals, i, 1);
     if (before.length > 0 && after.length > 0 && interval <= nearest) continue;
-    const usual = before.length === 0 ? extrapolated(after) : after.length === 0 ? extrapolated(before) : Math.max(median(before), median(after));
-    if (interval <= ratio * usual || growsSmoothly(interval, before, growth) || growsSmoothly(interval, after, growth)) continue;
+    const usual =
+      before.length === 0
+        ? extrapolated(after)
+        : after.length === 0
+          ? extrapolated(before)
+          : Math.max(median(before), median(after));
+    if (interval <= ratio * usual || growsSmoothly(interval, before, growth) || growsSmoothly(interval, after, growth))
+      continue;
     gaps.push({ position: i, usual });
   }
   return gaps.length > share * intervals.length && gaps.length > 1 ? [] : gaps;
 }
 
 /** The longest stretch between two gaps, null where it is open. */
-function longestStretch(stamps: Float64Array, gaps: { position: number }[]): { from: number | null; to: number | null; count: number } {
+function longestStretch(
+  stamps: Float64Array,
+  gaps: { position: number }[],
+): { from: number | null; to: number | null; count: number } {
   const ends = [...gaps.map(({ position }) => position), stamps.length - 1];
   let begin = 0;
   let best = { from: 0, to: -1 };
@@ -72,7 +87,11 @@ function longestStretch(stamps: Float64Array, gaps: { position: number }[]): { f
     if (end - begin > best.to - best.from) best = { from: begin, to: end };
     begin = end + 1;
   }
-  return { from: best.from === 0 ? null : stamps[best.from], to: best.to === stamps.length - 1 ? null : stamps[best.to], count: best.to - best.from + 1 };
+  return {
+    from: best.from === 0 ? null : stamps[best.from],
+    to: best.to === stamps.length - 1 ? null : stamps[best.to],
+    count: best.to - best.from + 1,
+  };
 }
 
 export const timeGap: Check = {
@@ -81,9 +100,21 @@ export const timeGap: Check = {
   title: 'No interval is far wider than those around it',
   source: 'common practice, no source',
   thresholds: {
-    ratio: { default: 3, unit: '1', meaning: 'an interval is a gap when it is wider than this many running medians of its neighbours' },
-    growth: { default: 2.1, unit: '1', meaning: 'largest ratio of neighbouring intervals that counts as a smoothly growing step' },
-    share: { default: 0.25, unit: '1', meaning: 'when more than this share of the intervals is wide, they are the sampling pattern and not gaps' },
+    ratio: {
+      default: 3,
+      unit: '1',
+      meaning: 'an interval is a gap when it is wider than this many running medians of its neighbours',
+    },
+    growth: {
+      default: 2.1,
+      unit: '1',
+      meaning: 'largest ratio of neighbouring intervals that counts as a smoothly growing step',
+    },
+    share: {
+      default: 0.25,
+      unit: '1',
+      meaning: 'when more than this share of the intervals is wide, they are the sampling pattern and not gaps',
+    },
   },
   judge(subject, { ratio, growth, share }) {
     const { survey } = subject;
@@ -91,7 +122,12 @@ export const timeGap: Check = {
     if (!survey || !record) return [];
     const gaps = findGaps(record.stamps, ratio, growth, share);
     if (gaps.length === 0) return [];
-    const widest = gaps.reduce((a, b) => (record.stamps[b.position + 1] - record.stamps[b.position] > record.stamps[a.position + 1] - record.stamps[a.position] ? b : a));
+    const widest = gaps.reduce((a, b) =>
+      record.stamps[b.position + 1] - record.stamps[b.position] >
+      record.stamps[a.position + 1] - record.stamps[a.position]
+        ? b
+        : a,
+    );
     const width = record.stamps[widest.position + 1] - record.stamps[widest.position];
     const stretch = longestStretch(record.stamps, gaps);
     const kept = `Keep only the longest stretch without a gap, ${counted(stretch.count, 'snapshot')}.`;
@@ -102,7 +138,11 @@ export const timeGap: Check = {
         evidence: evidenceOf(
           gaps.map(({ position }) => record.indices[position]),
           survey.stamps,
-          { widths: gaps.slice(0, 20).map(({ position }) => record.stamps[position + 1] - record.stamps[position]), usual: widest.usual, ratio: width / widest.usual },
+          {
+            widths: gaps.slice(0, 20).map(({ position }) => record.stamps[position + 1] - record.stamps[position]),
+            usual: widest.usual,
+            ratio: width / widest.usual,
+          },
         ),
         remedy: windowRecord(stretch.from, stretch.to, kept),
       },

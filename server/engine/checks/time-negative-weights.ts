@@ -41,7 +41,10 @@ export const timeNegativeWeights: Check = {
     if (negative.length === 0) return [];
     const indices = negative.map((i) => record.indices[i]);
     const least = negative.reduce((a, b) => (weights[b] < weights[a] ? b : a));
-    const { rule, reason } = chooseTimeRule(judgeTimeRules(record.stamps, survey.stampType), describeSpacing(record.stamps, survey.stampType));
+    const { rule, reason } = chooseTimeRule(
+      judgeTimeRules(record.stamps, survey.stampType),
+      describeSpacing(record.stamps, survey.stampType),
+    );
     return [
       {
         path: stampPath(subject),

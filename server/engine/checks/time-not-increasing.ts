@@ -37,7 +37,11 @@ export const timeNotIncreasing: Check = {
         path,
         message: `${counted(undefinedStamps.length, 'time stamp is', 'time stamps are')} NaN or infinite, first at snapshot ${undefinedStamps[0]}: drop ${undefinedStamps.length === 1 ? 'this snapshot' : 'these snapshots'} or correct the time in the reading.`,
         evidence: evidenceOf(undefinedStamps, null),
-        remedy: dropSnapshots(subject, undefinedStamps, `Drop ${theCounted(undefinedStamps.length, 'snapshot')} without a time.`),
+        remedy: dropSnapshots(
+          subject,
+          undefinedStamps,
+          `Drop ${theCounted(undefinedStamps.length, 'snapshot')} without a time.`,
+        ),
       });
     }
     return judgements;

@@ -38,7 +38,9 @@ export const timeRestartOverlap: Check = {
         ),
         remedy: orderRecord(
           { restart: keep },
-          keep === 'keep-later' ? 'Keep the later segment where time was covered twice.' : 'Keep the earlier segment: the later one does not reach as far.',
+          keep === 'keep-later'
+            ? 'Keep the later segment where time was covered twice.'
+            : 'Keep the earlier segment: the later one does not reach as far.',
         ),
       },
     ];

@@ -25,7 +25,8 @@ export const timeUnevenSpacing: Check = {
     const { spacing, verdict } = evennessOf(stamps, survey.stampType);
     if (verdict !== 'uneven') return [];
     let widest = 0;
-    for (let i = 1; i + 1 < stamps.length; i++) if (stamps[i + 1] - stamps[i] > stamps[widest + 1] - stamps[widest]) widest = i;
+    for (let i = 1; i + 1 < stamps.length; i++)
+      if (stamps[i + 1] - stamps[i] > stamps[widest + 1] - stamps[widest]) widest = i;
     const { rule } = chooseTimeRule(judgeTimeRules(stamps, survey.stampType), spacing);
     return [
       {

@@ -28,12 +28,23 @@ function judgeField(subject: CheckSubject, field: FieldSurvey, varying: string[]
   const { inTime, inSpace } = constancy(field, writtenCount(subject));
   if (!inTime && !inSpace) return [];
   const value = plainNumber(field.min[0], printedDigits(field.dtype));
-  const what = inTime && inSpace ? `holds the value ${value} everywhere and at all times` : inTime ? 'does not change in time' : 'does not change in space';
+  const what =
+    inTime && inSpace
+      ? `holds the value ${value} everywhere and at all times`
+      : inTime
+        ? 'does not change in time'
+        : 'does not change in space';
   return [
     {
       path: field.path,
       message: `${field.path} ${what}: it adds nothing that a reduced model could learn${varying.length > 0 ? '; leave it out, or keep it knowingly' : '; check that the right array was read'}.`,
-      evidence: { snapshots: field.snapshots, nodes: field.nodes, inTime, inSpace, ...(inTime && inSpace ? { value: field.min[0] } : {}) },
+      evidence: {
+        snapshots: field.snapshots,
+        nodes: field.nodes,
+        inTime,
+        inSpace,
+        ...(inTime && inSpace ? { value: field.min[0] } : {}),
+      },
       remedy: varying.length > 0 ? keepFields(varying, `Leave ${field.name} out of the state.`) : null,
     },
   ];
@@ -48,7 +59,9 @@ export const valueConstantField: Check = {
   judge(subject) {
     const { survey } = subject;
     if (!survey) return [];
-    const varying = survey.fields.filter((field) => !Object.values(constancy(field, writtenCount(subject))).includes(true)).map((field) => field.name);
+    const varying = survey.fields
+      .filter((field) => !Object.values(constancy(field, writtenCount(subject))).includes(true))
+      .map((field) => field.name);
     return survey.fields.flatMap((field) => judgeField(subject, field, varying));
   },
 };

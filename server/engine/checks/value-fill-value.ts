@@ -53,7 +53,12 @@ function fillIsFar(value: number, meanSquare: number): boolean {
   return value ** 2 * Number.EPSILON > meanSquare * 1e-6;
 }
 
-function judgeCandidate(subject: CheckSubject, field: FieldSurvey, candidate: Candidate, limits: Record<string, number>): Judgement[] {
+function judgeCandidate(
+  subject: CheckSubject,
+  field: FieldSurvey,
+  candidate: Candidate,
+  limits: Record<string, number>,
+): Judgement[] {
   const survey = subject.survey!;
   const m = Math.min(field.snapshots, writtenCount(subject));
   const affected: number[] = [];
@@ -76,8 +81,19 @@ function judgeCandidate(subject: CheckSubject, field: FieldSurvey, candidate: Ca
     {
       path: field.path,
       message: `${field.path} holds the ${candidate.declared ? 'declared fill value' : 'likely fill value'} ${plainNumber(candidate.value)} ${counted(total, 'time')} in ${counted(affected.length, 'snapshot')} of ${m}, first in ${snapshotText(survey, affected[0])}${node >= 0 ? ` at node ${node}` : ''}${place ? ` (${place})` : ''}; ${few ? 'mask these nodes or drop these snapshots' : 'mask these nodes'}.`,
-      evidence: evidenceOf(affected, survey.stamps, { count: total, snapshots: affected.length, value: candidate.value, declared: candidate.declared }),
-      remedy: few ? dropSnapshots(subject, affected, `Drop ${theCounted(affected.length, 'snapshot')} that ${affected.length === 1 ? 'holds' : 'hold'} fill values.`) : null,
+      evidence: evidenceOf(affected, survey.stamps, {
+        count: total,
+        snapshots: affected.length,
+        value: candidate.value,
+        declared: candidate.declared,
+      }),
+      remedy: few
+        ? dropSnapshots(
+            subject,
+            affected,
+            `Drop ${theCounted(affected.length, 'snapshot')} that ${affected.length === 1 ? 'holds' : 'hold'} fill values.`,
+          )
+        : null,
     },
   ];
 }
@@ -86,13 +102,30 @@ export const valueFillValue: Check = {
   id: 'value/fill-value',
   severity: 'blocker',
   title: 'No placeholder stands for a value',
-  source: 'CF Conventions, section 2.5.1 (missing data); netcdf.h, NC_FILL_*; 1e20 and -9999: common practice, no source',
+  source:
+    'CF Conventions, section 2.5.1 (missing data); netcdf.h, NC_FILL_*; 1e20 and -9999: common practice, no source',
   thresholds: {
-    minimumCount: { default: 3, unit: 'values', meaning: 'from this many equal values on, the lower limit `outlier` applies to a constant that is not declared' },
-    outlier: { default: 3, unit: 'standard deviations', meaning: 'how far from the mean of all other values a repeated constant must be' },
-    loneOutlier: { default: 100, unit: 'standard deviations', meaning: 'how far from the mean of all other values a constant must be that is met fewer times' },
+    minimumCount: {
+      default: 3,
+      unit: 'values',
+      meaning: 'from this many equal values on, the lower limit `outlier` applies to a constant that is not declared',
+    },
+    outlier: {
+      default: 3,
+      unit: 'standard deviations',
+      meaning: 'how far from the mean of all other values a repeated constant must be',
+    },
+    loneOutlier: {
+      default: 100,
+      unit: 'standard deviations',
+      meaning: 'how far from the mean of all other values a constant must be that is met fewer times',
+    },
   },
   judge(subject, limits) {
-    return subject.survey?.fields.flatMap((field) => field.fill.flatMap((candidate) => judgeCandidate(subject, field, candidate, limits))) ?? [];
+    return (
+      subject.survey?.fields.flatMap((field) =>
+        field.fill.flatMap((candidate) => judgeCandidate(subject, field, candidate, limits)),
+      ) ?? []
+    );
   },
 };

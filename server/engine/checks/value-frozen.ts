@@ -29,7 +29,12 @@ function updatedInRhythm(field: FieldSurvey, m: number): boolean {
   for (let j = 1; j < Math.min(m, field.hash.length); j++) if (field.hash[j] !== field.hash[j - 1]) changes.push(j);
   if (changes.length < 3) return false;
   const k = changes[1] - changes[0];
-  return k >= 2 && changes[0] <= k && m - changes[changes.length - 1] <= k && changes.every((j, i) => i === 0 || j - changes[i - 1] === k);
+  return (
+    k >= 2 &&
+    changes[0] <= k &&
+    m - changes[changes.length - 1] <= k &&
+    changes.every((j, i) => i === 0 || j - changes[i - 1] === k)
+  );
 }
 
 function judgeField(subject: CheckSubject, field: FieldSurvey): Judgement[] {

@@ -27,13 +27,28 @@ function judgeField(subject: CheckSubject, field: FieldSurvey): Judgement[] {
   const place = placeText(survey, field.path, node);
   const masked = m > 1 && affected.length === m && affected.every((j) => field.nonFinite[j] === field.nonFinite[first]);
   const few = affected.length < m / 2;
-  const advice = masked ? 'as many in every snapshot, so probably a mask: mask these nodes' : few ? 'drop these snapshots or mask the nodes' : 'mask the nodes or correct the run';
+  const advice = masked
+    ? 'as many in every snapshot, so probably a mask: mask these nodes'
+    : few
+      ? 'drop these snapshots or mask the nodes'
+      : 'mask the nodes or correct the run';
   return [
     {
       path: field.path,
       message: `${field.path} holds ${counted(total, 'NaN or infinite value')} in ${counted(affected.length, 'snapshot')} of ${m}, first in ${snapshotText(survey, first)} at node ${node}${place ? ` (${place})` : ''}; ${advice}.`,
-      evidence: evidenceOf(affected, survey.stamps, { count: total, snapshots: affected.length, firstNode: node, ...(place ? { place } : {}) }),
-      remedy: few ? dropSnapshots(subject, affected, `Drop ${theCounted(affected.length, 'snapshot')} with values that are not finite.`) : null,
+      evidence: evidenceOf(affected, survey.stamps, {
+        count: total,
+        snapshots: affected.length,
+        firstNode: node,
+        ...(place ? { place } : {}),
+      }),
+      remedy: few
+        ? dropSnapshots(
+            subject,
+            affected,
+            `Drop ${theCounted(affected.length, 'snapshot')} with values that are not finite.`,
+          )
+        : null,
     },
   ];
 }

@@ -22,13 +22,19 @@ const fadedNorm = 1e-3;
 
 /** Number of snapshots that the record should have: the most that any field has, or the number of stamps. */
 export function snapshotCount(survey: Survey): number {
-  return survey.fields.reduce((most, field) => Math.max(most, field.snapshots), survey.fields.length === 0 ? (survey.stamps?.length ?? 0) : 0);
+  return survey.fields.reduce(
+    (most, field) => Math.max(most, field.snapshots),
+    survey.fields.length === 0 ? (survey.stamps?.length ?? 0) : 0,
+  );
 }
 
 function holdsFill(survey: Survey, field: FieldSurvey): boolean {
   const last = field.snapshots - 1;
   const value = field.nonFinite[last] === field.nodes ? NaN : field.min[last];
-  const declared = survey.contents.arrays.find((array) => array.path === field.path)?.fillValue ?? field.fill.find((fill) => fill.declared)?.value ?? null;
+  const declared =
+    survey.contents.arrays.find((array) => array.path === field.path)?.fillValue ??
+    field.fill.find((fill) => fill.declared)?.value ??
+    null;
   if (declared !== null && (declared === value || (Number.isNaN(declared) && Number.isNaN(value)))) return true;
   return (declared === null && value === 0) || netcdfFills.includes(value);
 }
@@ -59,7 +65,11 @@ const sameTimeUnits = 8;
 
 export function sameTime(survey: Survey, j: number, k: number): boolean {
   const { stamps, stampType } = survey;
-  return stamps !== null && Math.abs(stamps[j] - stamps[k]) <= sameTimeUnits * roundOff(stampType) * Math.max(Math.abs(stamps[j]), Math.abs(stamps[k]));
+  return (
+    stamps !== null &&
+    Math.abs(stamps[j] - stamps[k]) <=
+      sameTimeUnits * roundOff(stampType) * Math.max(Math.abs(stamps[j]), Math.abs(stamps[k]))
+  );
 }
 
 /** Stamps of the written part, null for an ensemble or without time. */

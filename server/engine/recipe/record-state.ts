@@ -74,4 +74,10 @@ export function recordRanges(state: Pick<RecordState, 'columns' | 'sources'>): {
   return ranges;
 }
 
+/** Unit of the stamps, that of the first run; null without time. */
+export function timeUnitOf(state: Pick<RecordState, 'sources'>): string | null {
+  const time = state.sources[0]?.survey.reading.time;
+  return time && time.kind !== 'ensemble' ? time.unit : null;
+}
+
 export const counted = (n: number, noun: string) => `${n} ${noun}${n === 1 ? '' : 's'}`;

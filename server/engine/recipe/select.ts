@@ -48,6 +48,9 @@ export const select: Step<'select'> = {
     });
     const timed = state.sources.filter((source) => source.survey.stamps).length;
     if (timed !== 0 && timed !== state.sources.length) refuse('Some runs have time stamps and others have none: they cannot be weighed together. Give the missing ones in the reading.');
+    const units = state.sources.map(({ survey: { reading: { time } } }) => (time && time.kind !== 'ensemble' ? time.unit : null));
+    const other = units.findIndex((unit) => unit !== units[0]);
+    if (timed > 0 && other > 0) refuse(`Time is in ${units[0] ?? 'no unit'} in run ${state.sources[0].run} and in ${units[other] ?? 'no unit'} in run ${state.sources[other].run}: correct the reading.`, { run: state.sources[other].run });
     return `${counted(state.sources.length, 'run')} with ${counted(state.columns.length, 'snapshot')}; ${counted(fields.length, 'field')} of ${from} values in all.`;
   },
 };

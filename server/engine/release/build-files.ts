@@ -2,7 +2,7 @@
 import type { BuildSummary } from '#contract/dataset.ts';
 import type { SplitPart } from '#contract/recipe.ts';
 import { rowsOf } from '../recipe/plan.ts';
-import { recordRanges, type RecordState } from '../recipe/record-state.ts';
+import { recordRanges, timeUnitOf, type RecordState } from '../recipe/record-state.ts';
 import type { Decomposition } from '../spectrum/spectrum.ts';
 import { judgeTimeRules } from '../quadrature/judge.ts';
 import { npyFile } from './npy.ts';
@@ -54,7 +54,7 @@ function fieldsJson(plan: RecordState): Uint8Array {
     name: field.name, unit: field.unit, rows: [field.from, field.from + field.count],
     axes: field.axes.map((axis) => ({ name: axis.name, unit: axis.unit, count: axis.count, nodes: axis.nodes ? Array.from(axis.nodes) : null })),
   }));
-  return text(`${JSON.stringify({ order: 'C order over the axes of each field; fields one after the other', split_codes: splitCodes, fields }, null, 2)}\n`);
+  return text(`${JSON.stringify({ order: 'C order over the axes of each field; fields one after the other', time_unit: timeUnitOf(plan), split_codes: splitCodes, fields }, null, 2)}\n`);
 }
 
 export function buildFiles(plan: RecordState, mean: Float64Array | null, decomposition: Decomposition): Map<string, Uint8Array> {

@@ -36,7 +36,12 @@ export function recordStatistics(field: FieldSurvey): Statistics {
     sum += field.mean[j] * finite;
     count += finite;
   }
-  return { min: jsonNumber(min), max: jsonNumber(max), mean: count > 0 ? jsonNumber(sum / count) : null, norm: Array.from(field.norm, jsonNumber) };
+  return {
+    min: jsonNumber(min),
+    max: jsonNumber(max),
+    mean: count > 0 ? jsonNumber(sum / count) : null,
+    norm: Array.from(field.norm, jsonNumber),
+  };
 }
 
 /** Null when the coordinates are not known or not monotone; true also where only rounding makes them uneven. */
@@ -49,7 +54,12 @@ function reportField(survey: Survey, field: FieldReading): ReportedReading['fiel
   const surveyed = survey.fields.find((candidate) => candidate.path === field.path);
   const stored = survey.contents.arrays.find((array) => array.path === field.path);
   const perStep = field.path.includes('{step}');
-  const counts = field.axes.map((name) => survey.axes.find((axis) => axis.name === name)?.count ?? survey.reading.axes.find((axis) => axis.name === name)?.count ?? 0);
+  const counts = field.axes.map(
+    (name) =>
+      survey.axes.find((axis) => axis.name === name)?.count ??
+      survey.reading.axes.find((axis) => axis.name === name)?.count ??
+      0,
+  );
   return {
     path: field.path,
     name: field.name,
@@ -63,9 +73,21 @@ function reportField(survey: Survey, field: FieldReading): ReportedReading['fiel
 function reportReading(survey: Survey): ReportedReading {
   const { time } = survey.reading;
   return {
-    time: survey.stamps ? { path: survey.stampPath, count: survey.stamps.length, unit: time && time.kind !== 'ensemble' ? time.unit : null } : null,
+    time: survey.stamps
+      ? {
+          path: survey.stampPath,
+          count: survey.stamps.length,
+          unit: time && time.kind !== 'ensemble' ? time.unit : null,
+        }
+      : null,
     fields: survey.reading.fields.map((field) => reportField(survey, field)),
-    axes: survey.axes.map((axis) => ({ name: axis.name, path: axis.path, count: axis.count, uniform: isUniform(axis), periodic: axis.periodic })),
+    axes: survey.axes.map((axis) => ({
+      name: axis.name,
+      path: axis.path,
+      count: axis.count,
+      uniform: isUniform(axis),
+      periodic: axis.periodic,
+    })),
   };
 }
 
@@ -73,7 +95,12 @@ function reportReading(survey: Survey): ReportedReading {
  * @param digest SHA-256 of the archive: of its one file, or of a series' lines of digests
  * @param survey null when the archive could not be read
  */
-export function describeArchive(files: ReportedFile[], digest: string, survey: Survey | null, findings: Finding[]): ArchiveReport {
+export function describeArchive(
+  files: ReportedFile[],
+  digest: string,
+  survey: Survey | null,
+  findings: Finding[],
+): ArchiveReport {
   return {
     file: files[0].name,
     bytes: files.reduce((sum, file) => sum + file.bytes, 0),

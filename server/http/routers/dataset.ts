@@ -1,21 +1,14 @@
 /** Datasets, drafts, previews and reviews. */
 import { Router } from 'express';
-import { PennyweightError } from '#contract/error.ts';
 import { routes } from '#contract/routes.ts';
-import { builtBeam, builtValues } from '../../services/built-values.ts';
-import type { App, Caller } from '../../services/context.ts';
+import { builtBeam, builtOfDraft, builtValues } from '../../services/built-values.ts';
+import type { App } from '../../services/context.ts';
 import { createDataset, getDataset, listDatasets } from '../../services/datasets.ts';
 import { listDraftFindings } from '../../services/draft-findings.ts';
-import { buildDraft, createDraft, findDraft, getDraft, putRecipe } from '../../services/drafts.ts';
+import { buildDraft, createDraft, getDraft, putRecipe } from '../../services/drafts.ts';
 import { previewRecipe } from '../../services/recipe-preview.ts';
 import { approveDraft, listReviews, returnDraft, submitDraft } from '../../services/review.ts';
 import { mount } from '../mount.ts';
-
-async function built(app: App, caller: Caller, id: string) {
-  const row = await findDraft(app, caller, id);
-  if (!row.build || !row.buildFolder) throw new PennyweightError('wrong-state', 'The matrix of this draft has not been built yet.');
-  return { build: row.build, folder: app.storage.folder('builds', row.buildFolder) };
-}
 
 export function datasetRouter(app: App): Router {
   const router = Router();
@@ -28,14 +21,8 @@ export function datasetRouter(app: App): Router {
   mount(router, app, routes.previewRecipe, ({ caller, params, body }) => previewRecipe(app, caller, params.campaign, body.recipe));
   mount(router, app, routes.buildDraft, ({ caller, params }) => buildDraft(app, caller, params.draft));
   mount(router, app, routes.listDraftFindings, async ({ caller, params }) => ({ findings: await listDraftFindings(app, caller, params.draft) }));
-  mount(router, app, routes.getDraftBeam, async ({ caller, params }) => {
-    const { build, folder } = await built(app, caller, params.draft);
-    return builtBeam(folder, build, null);
-  });
-  mount(router, app, routes.getDraftValues, async ({ caller, params, query }) => {
-    const { build, folder } = await built(app, caller, params.draft);
-    return builtValues(folder, build, query);
-  });
+  mount(router, app, routes.getDraftBeam, async ({ caller, params }) => builtBeam(await builtOfDraft(app, caller, params.draft)));
+  mount(router, app, routes.getDraftValues, async ({ caller, params, query }) => builtValues(await builtOfDraft(app, caller, params.draft), query));
   mount(router, app, routes.submitDraft, ({ caller, params, body }) => submitDraft(app, caller, params.draft, body.note));
   mount(router, app, routes.returnDraft, ({ caller, params, body }) => returnDraft(app, caller, params.draft, body.reason));
   mount(router, app, routes.approveDraft, ({ caller, params, body }) => approveDraft(app, caller, params.draft, body));

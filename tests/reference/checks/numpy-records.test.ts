@@ -12,7 +12,9 @@ interface NumpyRecord {
   gaps: number[];
 }
 
-const records = JSON.parse(execFileSync('/usr/bin/python3', ['tests/reference/checks/numpy_records.py'], { encoding: 'utf8' })) as { [name: string]: NumpyRecord };
+const records = JSON.parse(
+  execFileSync('/usr/bin/python3', ['tests/reference/checks/numpy_records.py'], { encoding: 'utf8' }),
+) as Record<string, NumpyRecord>;
 
 describe('stamps made by NumPy', () => {
   it.each(Object.entries(records))('%s', (_name, { stamps, dtype, verdict, gaps }) => {

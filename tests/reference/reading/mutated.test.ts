@@ -5,7 +5,7 @@
 import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { errorCodes, PennyweightError } from '#contract/error.ts';
+import { errorCodes, type PennyweightError } from '#contract/error.ts';
 import { compiledReading } from './compiled-reading.ts';
 import { writtenBy } from './written-by-python.ts';
 
@@ -32,7 +32,7 @@ function seeded(seed: number): () => number {
 
 /** Most damage is done to the first kilobytes, where the structures are. */
 function mutate(original: Uint8Array, random: () => number): Uint8Array {
-  const bytes = original.slice();
+  const bytes = Uint8Array.from(original);
   const place = () => Math.floor((random() < 0.7 ? Math.min(4096, bytes.length) : bytes.length) * random());
   switch (Math.floor(random() * 5)) {
     case 0:
@@ -83,7 +83,8 @@ describe('mutated archives', () => {
           await archive.close();
         }
       } catch (cause) {
-        expect(cause, `${file.name}: ${String(cause)}`).toBeInstanceOf(PennyweightError);
+        // By name: the compiled reading room has a class of its own.
+        expect((cause as Error).name, `${file.name}: ${String(cause)}`).toBe('PennyweightError');
         const refusal = cause as PennyweightError;
         expect(errorCodes).toContain(refusal.code);
         expect(refusal.message.length).toBeGreaterThan(20);
@@ -101,6 +102,7 @@ describe('mutated archives', () => {
         }
       }),
     );
+    console.log(outcomes);
     expect([...outcomes.values()].reduce((sum, many) => sum + many, 0)).toBe(count);
     // Both kinds of ending are met, so the test looks at both.
     expect(outcomes.get('read, with fields')).toBeGreaterThan(10);

@@ -1,5 +1,5 @@
 import { mkdirSync, writeFileSync } from 'node:fs';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { checkReport, type ArchiveReport } from '#contract/check-report.ts';
 import { openIsolated } from '../../../server/reading/isolated.ts';
 import { jsonOf, makeArchives, pennyweight, runHere, type Run } from './command-run.ts';
@@ -17,6 +17,9 @@ const checkHere = (names: string[], ...options: string[]) => runHere(...command(
 const archivesOf = (run: Run): ArchiveReport[] => checkReport.strict().parse(jsonOf(run)).archives;
 const idsOf = (run: Run) => archivesOf(run).flatMap((archive) => archive.findings.map((finding) => finding.id));
 
+// Each run starts two processes, on a machine that may be busy.
+vi.setConfig({ testTimeout: 90_000 });
+
 describe('pennyweight check', () => {
   it('reports a sound archive with status 0: digest, reading and statistics as NumPy sees them', async () => {
     const run = await check(['sound.h5']);
@@ -26,13 +29,17 @@ describe('pennyweight check', () => {
     expect(archive).toMatchObject({ file: 'sound.h5', bytes: expected.bytes, sha256: expected.sha256, format: 'hdf5' });
     expect(archive.reading).toEqual({
       time: { path: '/t', count: 41, unit: 's' },
-      fields: [{ path: '/u', name: 'u', shape: [41, 6, 12], dtype: 'float64', unit: 'm s-1', axes: ['time', 'y', 'x'] }],
+      fields: [
+        { path: '/u', name: 'u', shape: [41, 6, 12], dtype: 'float64', unit: 'm s-1', axes: ['time', 'y', 'x'] },
+      ],
       axes: [
         { name: 'y', path: '/y', count: 6, uniform: false, periodic: null },
         { name: 'x', path: '/x', count: 12, uniform: true, periodic: null },
       ],
     });
-    expect(archive.findings.map(({ id, severity, path }) => [id, severity, path])).toEqual([['grid/uneven', 'note', '/y']]);
+    expect(archive.findings.map(({ id, severity, path }) => [id, severity, path])).toEqual([
+      ['grid/uneven', 'note', '/y'],
+    ]);
     const { min, max, mean, norm } = archive.statistics['/u'];
     expect([min, max]).toEqual([expected.min, expected.max]);
     expect(mean).toBeCloseTo(expected.mean, 12);
@@ -46,7 +53,10 @@ describe('pennyweight check', () => {
     expect(blocked.status).toBe(2);
     const [sound, restart] = archivesOf(blocked);
     expect([sound.file, restart.file]).toEqual(['sound.h5', 'restart.h5']);
-    expect(restart.findings.filter((finding) => finding.severity === 'blocker').map((finding) => finding.id)).toEqual(['time/restart-overlap', 'value/non-finite']);
+    expect(restart.findings.filter((finding) => finding.severity === 'blocker').map((finding) => finding.id)).toEqual([
+      'time/restart-overlap',
+      'value/non-finite',
+    ]);
   });
 
   const hostile = ['text.h5', 'empty.h5', 'cut.h5', 'pickled.npy', 'outside.h5', 'claims.h5'];
@@ -57,11 +67,26 @@ describe('pennyweight check', () => {
     const reports = archivesOf(run);
     const blockers = reports.map((archive) => archive.findings.filter((finding) => finding.severity === 'blocker'));
     expect(blockers.map((found) => found[0]?.id ?? null)).toEqual([
-      'file/unreadable', 'file/unreadable', 'file/unreadable', 'file/unreadable', 'file/outside-link', 'file/unwritten-data', null,
+      'file/unreadable',
+      'file/unreadable',
+      'file/unreadable',
+      'file/unreadable',
+      'file/outside-link',
+      'file/unwritten-data',
+      null,
     ]);
-    const words = [/^text\.h5 is text/, /^empty\.h5 is empty/, /^cut\.h5 is cut off/, /^pickled\.npy holds pickled/, /never followed/, /holds 0 of the 1000000/];
+    const words = [
+      /^text\.h5 is text/,
+      /^empty\.h5 is empty/,
+      /^cut\.h5 is cut off/,
+      /^pickled\.npy holds pickled/,
+      /never followed/,
+      /holds 0 of the 1000000/,
+    ];
     words.forEach((word, i) => expect(blockers[i][0].message).toMatch(word));
-    expect(reports.slice(0, 4).map(({ format, reading, statistics }) => [format, reading, statistics])).toEqual(Array(4).fill([null, null, {}]));
+    expect(reports.slice(0, 4).map(({ format, reading, statistics }) => [format, reading, statistics])).toEqual(
+      Array(4).fill([null, null, {}]),
+    );
   });
 
   it('ends with 2 for a single file that cannot be read', async () => {
@@ -125,11 +150,31 @@ describe('wrong usage', () => {
     ['a file named twice', () => ['check', archives.at('sound.h5'), archives.at('sound.h5')], 'named twice'],
     ['an unknown option', () => ['check', archives.at('sound.h5'), '--strict'], "'--strict'"],
     ['a start without a step', () => ['check', archives.at('sound.h5'), '--time-start', '0'], 'given together'],
-    ['a step that is no number', () => ['check', archives.at('sound.h5'), '--time-start', '0', '--time-step', 'fast'], 'takes a number'],
-    ['a step of zero', () => ['check', archives.at('sound.h5'), '--time-start', '0', '--time-step', '0'], 'positive number'],
-    ['an ensemble with a start', () => ['check', archives.at('sound.h5'), '--ensemble', '--time-start', '0', '--time-step', '1'], 'exclude each other'],
-    ['a policy that is no JSON', () => ['check', archives.at('sound.h5'), '--policy', archives.at('text.h5')], 'is not JSON'],
-    ['a policy that is missing', () => ['check', archives.at('sound.h5'), '--policy', archives.at('none.json')], 'cannot be read'],
+    [
+      'a step that is no number',
+      () => ['check', archives.at('sound.h5'), '--time-start', '0', '--time-step', 'fast'],
+      'takes a number',
+    ],
+    [
+      'a step of zero',
+      () => ['check', archives.at('sound.h5'), '--time-start', '0', '--time-step', '0'],
+      'positive number',
+    ],
+    [
+      'an ensemble with a start',
+      () => ['check', archives.at('sound.h5'), '--ensemble', '--time-start', '0', '--time-step', '1'],
+      'exclude each other',
+    ],
+    [
+      'a policy that is no JSON',
+      () => ['check', archives.at('sound.h5'), '--policy', archives.at('text.h5')],
+      'is not JSON',
+    ],
+    [
+      'a policy that is missing',
+      () => ['check', archives.at('sound.h5'), '--policy', archives.at('none.json')],
+      'cannot be read',
+    ],
   ])('ends with 64 and one message for %s', async (_name, args, words) => {
     const run = await runHere(...args());
     expect([run.status, run.out]).toEqual([64, '']);
@@ -152,10 +197,13 @@ describe('wrong usage', () => {
     expect([reading.status, reading.err]).toEqual([64, expect.stringContaining('expected form at layout')]);
   });
 
-  it.each([[['--help']], [['check', '--help']], [['weights', '--help']]])('explains itself with an example: %j', async (args) => {
-    const run = await pennyweight(...args);
-    expect([run.status, run.err]).toEqual([0, '']);
-    expect(run.out).toMatch(/^Usage: pennyweight /);
-    expect(run.out).toContain('Example: pennyweight ');
-  });
+  it.each([[['--help']], [['check', '--help']], [['weights', '--help']]])(
+    'explains itself with an example: %j',
+    async (args) => {
+      const run = await pennyweight(...args);
+      expect([run.status, run.err]).toEqual([0, '']);
+      expect(run.out).toMatch(/^Usage: pennyweight /);
+      expect(run.out).toContain('Example: pennyweight ');
+    },
+  );
 });

@@ -15,7 +15,9 @@ const launcher = 'server/cli/pennyweight.js';
 
 export function pennyweight(...args: string[]): Promise<Run> {
   return new Promise((resolve) => {
-    execFile(process.execPath, [launcher, ...args], { maxBuffer: 64 * 2 ** 20 }, (error, out, err) => resolve({ status: error ? Number(error.code) : 0, out, err }));
+    execFile(process.execPath, [launcher, ...args], { maxBuffer: 64 * 2 ** 20 }, (error, out, err) =>
+      resolve({ status: error ? Number(error.code) : 0, out, err }),
+    );
   });
 }
 
@@ -23,7 +25,11 @@ export function pennyweight(...args: string[]): Promise<Run> {
 export async function runHere(...args: string[]): Promise<Run> {
   let out = '';
   let err = '';
-  const status = await run(args, { result: (text) => (out += `${text}\n`), message: (text) => (err += `${text}\n`), progress: () => undefined });
+  const status = await run(args, {
+    result: (text) => (out += `${text}\n`),
+    message: (text) => (err += `${text}\n`),
+    progress: () => undefined,
+  });
   return { status, out, err };
 }
 
@@ -47,6 +53,8 @@ export interface Expected {
 /** Writes the archives of records.py; `at` names a file among them. */
 export function makeArchives(): { at: (name: string) => string; expected: Expected; remove: () => void } {
   const folder = mkdtempSync(join(tmpdir(), 'pennyweight-cli-'));
-  const expected = JSON.parse(execFileSync('/usr/bin/python3', ['tests/unit/cli/records.py', folder], { encoding: 'utf8' })) as Expected;
+  const expected = JSON.parse(
+    execFileSync('/usr/bin/python3', ['tests/unit/cli/records.py', folder], { encoding: 'utf8' }),
+  ) as Expected;
   return { at: (name) => join(folder, name), expected, remove: () => rmSync(folder, { recursive: true, force: true }) };
 }

@@ -57,6 +57,9 @@ with h5py.File("claims.h5", "w") as file:
     file.create_dataset("t", shape=(10**6,), chunks=(1000,), dtype="f8")
     file.create_dataset("u", shape=(10**6, 10**6), chunks=(1, 10**5), dtype="f4")
 
+with h5py.File("field.h5", "w") as file:
+    file.create_dataset("u", shape=(10**6, 10**6), dtype="f4")
+
 os.mkdir("series")
 np.save("series/t.npy", uniform)
 np.save("series/u.npy", np.asfortranarray(state(uniform)))

@@ -1,6 +1,6 @@
 import { execFileSync } from 'node:child_process';
 import { existsSync, readdirSync } from 'node:fs';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { problem } from '#contract/error.ts';
 import { weightsReport } from '#contract/weights.ts';
 import { jsonOf, makeArchives, pennyweight, runHere, type Run } from './command-run.ts';
@@ -16,6 +16,9 @@ const command = (names: string[], options: string[]) => ['weights', ...names.map
 const weigh = (names: string[], ...options: string[]) => pennyweight(...command(names, options));
 const weighHere = (names: string[], ...options: string[]) => runHere(...command(names, options));
 const reportOf = (run: Run) => weightsReport.strict().parse(jsonOf(run));
+
+// Each run starts two processes, on a machine that may be busy.
+vi.setConfig({ testTimeout: 90_000 });
 
 describe('pennyweight weights', () => {
   it('chooses a rule, weighs the grid, and finds the singular values that NumPy finds', async () => {
@@ -67,6 +70,7 @@ describe('pennyweight weights', () => {
     ['restart.h5', 'stamps-invalid', 'stamp 101'],
     ['text.h5', 'unsupported-format', 'text'],
     ['cut.h5', 'file-unreadable', 'cut off'],
+    ['field.h5', 'limit-exceeded', '1000000000000 values'],
   ])('says why %s cannot be weighed: %s', async (name, code, words) => {
     const run = await (name === 'restart.h5' ? weigh : weighHere)([name]);
     expect(run.status).toBe(2);
@@ -78,12 +82,21 @@ describe('pennyweight weights', () => {
     const out = archives.at('weighed');
     const run = await weighHere(['sound.h5'], '--rank', '3', '--out', out);
     expect(run.status).toBe(0);
-    expect(readdirSync(out).sort()).toEqual(['modes.npy', 'space_weights.npy', 'spectrum.csv', 'time.npy', 'time_weights.npy', 'weights.json']);
+    expect(readdirSync(out).sort()).toEqual([
+      'modes.npy',
+      'space_weights.npy',
+      'spectrum.csv',
+      'time.npy',
+      'time_weights.npy',
+      'weights.json',
+    ]);
     const script = `
 import numpy as np
 phi, w = np.load("modes.npy"), np.load("space_weights.npy")
 print(phi.shape, phi.flags.f_contiguous, np.abs(phi.T @ (w[:, None] * phi) - np.eye(3)).max() < 1e-9, np.load("time_weights.npy").sum().round(12), np.load("time.npy")[-1])`;
-    expect(execFileSync('/usr/bin/python3', ['-c', script], { cwd: out, encoding: 'utf8' }).trim()).toBe('(72, 3) True True 2.0 2.0');
+    expect(execFileSync('/usr/bin/python3', ['-c', script], { cwd: out, encoding: 'utf8' }).trim()).toBe(
+      '(72, 3) True True 2.0 2.0',
+    );
     expect((await runHere('weights', archives.at('sound.h5'), '--out', out)).status).toBe(64);
   });
 

@@ -9,13 +9,24 @@ import { idsOf, makeSubject, movingValues, uniform, type RecordPlan } from './su
 
 const noPolicy = { thresholds: {} };
 const fileOf = (id: string) => id.replace('/', '-');
-const steps = { order: orderStep, window: windowStep, weigh: weighStep, cast: castStep, select: selectStep.pick({ step: true, fields: true }) };
+const steps = {
+  order: orderStep,
+  window: windowStep,
+  weigh: weighStep,
+  cast: castStep,
+  select: selectStep.pick({ step: true, fields: true }),
+};
 
 /** One of everything: a restart, a repeated stamp, a gap, NaN, copies, a still field, no unit, an uneven axis. */
 const troubled: RecordPlan = {
   stamps: [...uniform(20, 1), ...uniform(20, 1, 15), 34, 60, 61, 62, 63, 64],
   fields: [
-    { values: movingValues(46).map((snapshot, j) => (j === 7 ? [NaN, 1, 2, 3] : j === 9 ? movingValues(46)[8] : snapshot)), unit: null },
+    {
+      values: movingValues(46).map((snapshot, j) =>
+        j === 7 ? [NaN, 1, 2, 3] : j === 9 ? movingValues(46)[8] : snapshot,
+      ),
+      unit: null,
+    },
     { name: 'w', values: movingValues(46).map(() => [0, 0, 0, 0]) },
   ],
   axes: [{ name: 'x', nodes: [0, 1, 3, 7] }],
@@ -53,14 +64,23 @@ describe('judgeAll', () => {
   const findings = judgeAll(makeSubject(troubled), noPolicy);
 
   it('orders by severity, then as the catalogue does', () => {
-    const rank = findings.map((each) => [severities.indexOf(each.severity), catalogue.findIndex(({ id }) => id === each.id)]);
+    const rank = findings.map((each) => [
+      severities.indexOf(each.severity),
+      catalogue.findIndex(({ id }) => id === each.id),
+    ]);
     expect(rank).toEqual([...rank].sort((a, b) => a[0] - b[0] || a[1] - b[1]));
   });
 
   it('finds each trouble once', () => {
     expect(idsOf(findings)).toEqual([
-      'time/duplicate', 'time/restart-overlap', 'value/non-finite', 'value/frozen',
-      'time/gap', 'time/uneven-spacing', 'value/constant-field', 'value/unit-missing',
+      'time/duplicate',
+      'time/restart-overlap',
+      'value/non-finite',
+      'value/frozen',
+      'time/gap',
+      'time/uneven-spacing',
+      'value/constant-field',
+      'value/unit-missing',
       'grid/uneven',
     ]);
   });
@@ -76,7 +96,8 @@ describe('judgeAll', () => {
   it('offers only remedies that the steps of the recipe take', () => {
     const remedies = findings.flatMap((each) => each.remedy ?? []);
     expect(remedies.length).toBeGreaterThan(5);
-    for (const { step, parameters } of remedies) expect(() => steps[step as keyof typeof steps].parse({ step, ...parameters })).not.toThrow();
+    for (const { step, parameters } of remedies)
+      expect(() => steps[step as keyof typeof steps].parse({ step, ...parameters })).not.toThrow();
   });
 
   it('finds the same, in the same order, whatever was judged before and in whichever order fields stand', () => {
@@ -97,19 +118,28 @@ describe('judgeAll', () => {
     const values = [...movingValues(7), ...uniform(4).map(() => [0, 0, 0, 0])];
     const stamps = [...uniform(7), 0, 0, 0, 0];
     expect(idsOf(judgeAll(makeSubject({ stamps, fields: [{ values }] }), noPolicy))).toEqual(['file/unwritten-data']);
-    const raised = judgeAll(makeSubject({ stamps, fields: [{ values }] }), { thresholds: { 'file/unwritten-data': { trailingSnapshots: 10 } } });
+    const raised = judgeAll(makeSubject({ stamps, fields: [{ values }] }), {
+      thresholds: { 'file/unwritten-data': { trailingSnapshots: 10 } },
+    });
     expect(idsOf(raised)).toEqual(expect.arrayContaining(['value/frozen', 'time/restart-overlap']));
   });
 
   it('speaks of what it knows when nothing could be read', () => {
     const failure = { message: 'run.h5 is text: hand in the HDF5 file.', path: null };
-    const subject = makeSubject(null, { failure, checksum: { received: 'aa', announced: 'bb' }, demands: { fields: [], parameters: [{ name: 'Re', unit: null, min: null, max: null }] } });
+    const subject = makeSubject(null, {
+      failure,
+      checksum: { received: 'aa', announced: 'bb' },
+      demands: { fields: [], parameters: [{ name: 'Re', unit: null, min: null, max: null }] },
+    });
     expect(idsOf(judgeAll(subject, noPolicy))).toEqual(['file/unreadable', 'file/checksum-mismatch']);
   });
 
   it.each([0, 1, 2, 3])('judges records of %i snapshots and nodes without an error', (size) => {
     for (let nodes = 0; nodes <= 3; nodes++) {
-      const subject = makeSubject({ stamps: uniform(size), fields: [{ values: movingValues(size, nodes) }] }, { timeRule: 'simpson' });
+      const subject = makeSubject(
+        { stamps: uniform(size), fields: [{ values: movingValues(size, nodes) }] },
+        { timeRule: 'simpson' },
+      );
       const found = judgeAll(subject, noPolicy);
       if (size > 0 && nodes > 0) expect(found.filter((each) => each.severity === 'blocker')).toEqual([]);
       else expect(idsOf(found)).toContain('reading/incomplete');
@@ -118,7 +148,10 @@ describe('judgeAll', () => {
 
   it('judges 100,000 snapshots', () => {
     const m = 100_000;
-    const subject = makeSubject({ stamps: uniform(m, 0.001), fields: [{ values: Array.from({ length: m }, (_, j) => [Math.sin(j), j]) }] });
+    const subject = makeSubject({
+      stamps: uniform(m, 0.001),
+      fields: [{ values: Array.from({ length: m }, (_, j) => [Math.sin(j), j]) }],
+    });
     expect(idsOf(judgeAll(subject, noPolicy))).toEqual(['time/even-point-count']);
   });
 });

@@ -10,7 +10,15 @@ const added = (count: number, step: number, round: (value: number) => number) =>
   return Float64Array.from(stamps);
 };
 const axis = (nodes: number[] | null, more: Partial<SurveyAxis> = {}): SurveyAxis => ({
-  name: 'x', path: '/x', unit: 'm', count: nodes?.length ?? 0, nodes: nodes && Float64Array.from(nodes), edges: null, dtype: 'float64', periodic: null, ...more,
+  name: 'x',
+  path: '/x',
+  unit: 'm',
+  count: nodes?.length ?? 0,
+  nodes: nodes && Float64Array.from(nodes),
+  edges: null,
+  dtype: 'float64',
+  periodic: null,
+  ...more,
 });
 
 describe('evennessOf', () => {
@@ -18,7 +26,12 @@ describe('evennessOf', () => {
     ['stamps added up in double precision', added(2001, 0.001, (value) => value), 'float64', 'even'],
     ['stamps added up in single precision', added(2001, 0.001, Math.fround), 'float32', 'rounded'],
     ['stamps added up in single precision, stored as doubles', added(2001, 0.001, Math.fround), 'float64', 'rounded'],
-    ['stamps multiplied in single precision', Float64Array.from(uniform(2001, 0.001), Math.fround), 'float32', 'rounded'],
+    [
+      'stamps multiplied in single precision',
+      Float64Array.from(uniform(2001, 0.001), Math.fround),
+      'float32',
+      'rounded',
+    ],
     ['a step that grows by 0.01 %', Float64Array.from({ length: 100 }, (_, j) => 1.0001 ** j), 'float64', 'uneven'],
   ])('judges %s', (_name, stamps, dtype, verdict) => {
     expect(evennessOf(stamps, dtype).verdict).toBe(verdict);
@@ -63,10 +76,13 @@ describe('axisEvenness', () => {
     expect(axisEvenness(axis(null, { edges: Float64Array.of(0, 1, 3) }))!.verdict).toBe('uneven');
   });
 
-  it.each([['unknown', axis(null)], ['empty', axis([])], ['turning', axis([0, 2, 1])], ['repeated', axis([0, 1, 1])], ['undefined', axis([0, NaN, 1])]])(
-    'does not judge an axis that is %s',
-    (_name, given) => {
-      expect(axisEvenness(given)).toBeNull();
-    },
-  );
+  it.each([
+    ['unknown', axis(null)],
+    ['empty', axis([])],
+    ['turning', axis([0, 2, 1])],
+    ['repeated', axis([0, 1, 1])],
+    ['undefined', axis([0, NaN, 1])],
+  ])('does not judge an axis that is %s', (_name, given) => {
+    expect(axisEvenness(given)).toBeNull();
+  });
 });

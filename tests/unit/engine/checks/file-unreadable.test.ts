@@ -7,14 +7,21 @@ import { judge, makeSubject, makeSurvey } from './survey-factory.ts';
 describe('file/unreadable', () => {
   it('passes on what stopped the reading, with its place', () => {
     const failure = { message: 'run.h5 ends after 512 of 4096 bytes: upload it again.', path: '/u' };
-    expect(judge(fileUnreadable, makeSubject(null, { failure }))).toEqual([{ path: '/u', message: failure.message, evidence: {}, remedy: null }]);
+    expect(judge(fileUnreadable, makeSubject(null, { failure }))).toEqual([
+      { path: '/u', message: failure.message, evidence: {}, remedy: null },
+    ]);
   });
 
   it('names every damaged place of a container that opens', () => {
-    const damaged = [{ path: '/u', reason: 'its chunk index is broken.' }, { path: '/v', reason: 'no data type' }];
+    const damaged = [
+      { path: '/u', reason: 'its chunk index is broken.' },
+      { path: '/v', reason: 'no data type' },
+    ];
     const found = judge(fileUnreadable, makeSubject({ contents: { damaged } }));
     expect(found.map((judgement) => judgement.path)).toEqual(['/u', '/v']);
-    expect(found[0].message).toBe('/u could not be read: its chunk index is broken; compare the file with the original and upload it again.');
+    expect(found[0].message).toBe(
+      '/u could not be read: its chunk index is broken; compare the file with the original and upload it again.',
+    );
   });
 
   it('leaves an array that claims more than was written to file/unwritten-data, which then fires', () => {

@@ -5,9 +5,18 @@ import { gridOf } from '../../../../server/engine/checks/space-axes.ts';
 import { judge, makeSubject, movingValues, uniform, type AxisPlan } from './survey-factory.ts';
 
 type OtherAxis = CheckSubject['otherGrids'][number]['axes'][number];
-const other = (nodes: ArrayLike<number>, more: Partial<OtherAxis> = {}) => ({ archive: 'run-b', axes: [{ name: 'x', nodes: Float64Array.from(nodes), count: nodes.length, ...more }] });
+const other = (nodes: ArrayLike<number>, more: Partial<OtherAxis> = {}) => ({
+  archive: 'run-b',
+  axes: [{ name: 'x', nodes: Float64Array.from(nodes), count: nodes.length, ...more }],
+});
 const found = (axis: AxisPlan, ...otherGrids: CheckSubject['otherGrids']) =>
-  judge(gridDiffers, makeSubject({ fields: [{ values: movingValues(3, axis.nodes?.length ?? axis.count ?? 0) }], axes: [axis] }, { otherGrids }));
+  judge(
+    gridDiffers,
+    makeSubject(
+      { fields: [{ values: movingValues(3, axis.nodes?.length ?? axis.count ?? 0) }], axes: [axis] },
+      { otherGrids },
+    ),
+  );
 const nodes = Array.from({ length: 21 }, (_, i) => Math.sin(i / 20));
 
 describe('grid/differs', () => {
@@ -30,12 +39,33 @@ describe('grid/differs', () => {
 
   it.each<[string, AxisPlan, CheckSubject['otherGrids']]>([
     ['the same grid', { name: 'x', nodes }, [other(nodes)]],
-    ['the same grid stored as float32 there', { name: 'x', nodes }, [other(Float32Array.from(nodes), { dtype: 'float32' })]],
+    [
+      'the same grid stored as float32 there',
+      { name: 'x', nodes },
+      [other(Float32Array.from(nodes), { dtype: 'float32' })],
+    ],
     ['the same grid stored as float32 there, type unknown', { name: 'x', nodes }, [other(Float32Array.from(nodes))]],
-    ['the same grid stored as float32 here', { name: 'x', nodes: [...Float32Array.from(nodes)], dtype: 'float32' }, [other(nodes, { dtype: 'float64' })]],
-    ['rounding of double', { name: 'x', nodes }, [other(nodes.map((x) => (x / 3) * 3), { dtype: 'float64' })]],
+    [
+      'the same grid stored as float32 here',
+      { name: 'x', nodes: [...Float32Array.from(nodes)], dtype: 'float32' },
+      [other(nodes, { dtype: 'float64' })],
+    ],
+    [
+      'rounding of double',
+      { name: 'x', nodes },
+      [
+        other(
+          nodes.map((x) => (x / 3) * 3),
+          { dtype: 'float64' },
+        ),
+      ],
+    ],
     ['no other archive', { name: 'x', nodes }, []],
-    ['coordinates unknown there', { name: 'x', nodes }, [{ archive: 'run-b', axes: [{ name: 'x', nodes: null, count: 21 }] }]],
+    [
+      'coordinates unknown there',
+      { name: 'x', nodes },
+      [{ archive: 'run-b', axes: [{ name: 'x', nodes: null, count: 21 }] }],
+    ],
     ['coordinates unknown here', { name: 'x', nodes: null, count: 21 }, [other(nodes)]],
   ])('is silent for %s', (_name, axis, grids) => {
     expect(found(axis, ...grids)).toEqual([]);
@@ -43,10 +73,18 @@ describe('grid/differs', () => {
 
   it('compares lists of nodes by their coordinates, as gridOf hands them over', () => {
     const listed = (y: number[]) =>
-      makeSubject({ fields: [{ values: movingValues(3), axes: ['time', 'node'] }], axes: [{ name: 'node', nodes: null, count: 4 }, { name: 'x', nodes: [0, 1, 0, 1] }, { name: 'y', nodes: y }] });
+      makeSubject({
+        fields: [{ values: movingValues(3), axes: ['time', 'node'] }],
+        axes: [
+          { name: 'node', nodes: null, count: 4 },
+          { name: 'x', nodes: [0, 1, 0, 1] },
+          { name: 'y', nodes: y },
+        ],
+      });
     const grid = gridOf(listed([0, 0, 1, 1]).survey!);
     expect(grid.map((axis) => axis.name)).toEqual(['x', 'y', 'node']);
-    const compared = (y: number[]) => judge(gridDiffers, { ...listed(y), otherGrids: [{ archive: 'run-b', axes: grid }] });
+    const compared = (y: number[]) =>
+      judge(gridDiffers, { ...listed(y), otherGrids: [{ archive: 'run-b', axes: grid }] });
     expect(compared([0, 0, 1, 1])).toEqual([]);
     expect(compared([0, 0, 1, 2])[0].message).toContain('node 3 of the axis y');
   });
@@ -57,7 +95,11 @@ describe('grid/differs', () => {
   });
 
   it('makes one finding of many archives', () => {
-    const [judgement, ...more] = found({ name: 'x', nodes }, ...Array.from({ length: 30 }, () => other(uniform(21))), other(nodes));
+    const [judgement, ...more] = found(
+      { name: 'x', nodes },
+      ...Array.from({ length: 30 }, () => other(uniform(21))),
+      other(nodes),
+    );
     expect(more).toEqual([]);
     expect(judgement.evidence.count).toBe(30);
     expect(judgement.evidence.archives).toHaveLength(20);

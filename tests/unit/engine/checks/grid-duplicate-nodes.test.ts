@@ -2,9 +2,23 @@ import { describe, expect, it } from 'vitest';
 import { gridDuplicateNodes } from '../../../../server/engine/checks/grid-duplicate-nodes.ts';
 import { judge, makeSubject, movingValues, uniform, type AxisPlan } from './survey-factory.ts';
 
-const found = (axis: AxisPlan) => judge(gridDuplicateNodes, makeSubject({ fields: [{ values: movingValues(3, axis.nodes?.length ?? 3) }], axes: [axis] }));
+const found = (axis: AxisPlan) =>
+  judge(
+    gridDuplicateNodes,
+    makeSubject({ fields: [{ values: movingValues(3, axis.nodes?.length ?? 3) }], axes: [axis] }),
+  );
 const list = (x: number[], y: number[]) =>
-  judge(gridDuplicateNodes, makeSubject({ fields: [{ values: movingValues(3, x.length), axes: ['time', 'node'] }], axes: [{ name: 'node', nodes: null, count: x.length }, { name: 'x', nodes: x }, { name: 'y', nodes: y }] }));
+  judge(
+    gridDuplicateNodes,
+    makeSubject({
+      fields: [{ values: movingValues(3, x.length), axes: ['time', 'node'] }],
+      axes: [
+        { name: 'node', nodes: null, count: x.length },
+        { name: 'x', nodes: x },
+        { name: 'y', nodes: y },
+      ],
+    }),
+  );
 
 /** Float32 wall grading at an offset: distinct neighbours a few units in the last place apart. */
 const fineFloat32 = [...new Set(Float32Array.from({ length: 60 }, (_, i) => 1000 + 1e-4 * i))];
@@ -15,7 +29,11 @@ describe('grid/duplicate-nodes', () => {
     ['a block boundary computed twice', { name: 'x', nodes: [0, 0.1, 0.2, 0.3, 0.1 + 0.2, 0.4, 0.5] }, [4]],
     ['a descending axis', { name: 'z', nodes: [3, 2, 2, 1] }, [2]],
     ['an axis collapsed to a point', { name: 'x', nodes: [1, 1, 1] }, [1, 2]],
-    ['a float32 axis that lost its finest cells', { name: 'x', dtype: 'float32', nodes: [...Float32Array.from([1000, 1000 + 1e-6, 1001, 1002])] }, [1]],
+    [
+      'a float32 axis that lost its finest cells',
+      { name: 'x', dtype: 'float32', nodes: [...Float32Array.from([1000, 1000 + 1e-6, 1001, 1002])] },
+      [1],
+    ],
   ])('fires for %s', (_name, axis, indices) => {
     const judgements = found(axis);
     expect(judgements).toHaveLength(1);

@@ -3,8 +3,10 @@ import { weighStep } from '#contract/recipe.ts';
 import { gridUneven } from '../../../../server/engine/checks/grid-uneven.ts';
 import { judge, makeSubject, movingValues, uniform, type AxisPlan } from './survey-factory.ts';
 
-const found = (axis: AxisPlan) => judge(gridUneven, makeSubject({ fields: [{ values: movingValues(3, axis.nodes?.length ?? 3) }], axes: [axis] }));
-const linspace = (from: number, to: number, count: number) => Array.from({ length: count }, (_, i) => from + ((to - from) * i) / (count - 1));
+const found = (axis: AxisPlan) =>
+  judge(gridUneven, makeSubject({ fields: [{ values: movingValues(3, axis.nodes?.length ?? 3) }], axes: [axis] }));
+const linspace = (from: number, to: number, count: number) =>
+  Array.from({ length: count }, (_, i) => from + ((to - from) * i) / (count - 1));
 
 describe('grid/uneven', () => {
   it('says by how much', () => {
@@ -17,9 +19,15 @@ describe('grid/uneven', () => {
 
   it.each<[string, AxisPlan]>([
     ['a graded axis', { name: 'y', nodes: Array.from({ length: 30 }, (_, i) => 1.1 ** i) }],
-    ['Chebyshev points, descending', { name: 'x', nodes: Array.from({ length: 17 }, (_, i) => Math.cos((Math.PI * i) / 16)) }],
+    [
+      'Chebyshev points, descending',
+      { name: 'x', nodes: Array.from({ length: 17 }, (_, i) => Math.cos((Math.PI * i) / 16)) },
+    ],
     ['uneven cell edges', { name: 'x', edges: [0, 1, 3, 4] }],
-    ['a graded axis in float32', { name: 'y', dtype: 'float32', nodes: [...Float32Array.from({ length: 30 }, (_, i) => 1.01 ** i)] }],
+    [
+      'a graded axis in float32',
+      { name: 'y', dtype: 'float32', nodes: [...Float32Array.from({ length: 30 }, (_, i) => 1.01 ** i)] },
+    ],
   ])('fires for %s', (_name, axis) => {
     expect(found(axis)).toHaveLength(1);
   });
@@ -42,7 +50,18 @@ describe('grid/uneven', () => {
 
   it('does not judge the coordinates of a list of nodes', () => {
     const fields = [{ values: movingValues(3), axes: ['time' as const, 'node' as const] }];
-    expect(judge(gridUneven, makeSubject({ fields, axes: [{ name: 'node', nodes: null, count: 4 }, { name: 'x', nodes: [0, 1, 5, 6] }] }))).toEqual([]);
+    expect(
+      judge(
+        gridUneven,
+        makeSubject({
+          fields,
+          axes: [
+            { name: 'node', nodes: null, count: 4 },
+            { name: 'x', nodes: [0, 1, 5, 6] },
+          ],
+        }),
+      ),
+    ).toEqual([]);
     expect(judge(gridUneven, makeSubject({ axes: [{ name: 'x', nodes: uniform(4) }] }))).toEqual([]);
   });
 });

@@ -5,7 +5,10 @@ import { judge, makeSubject } from './survey-factory.ts';
 
 const demands: CampaignDemands = {
   fields: [],
-  parameters: [{ name: 'Re', unit: null, min: 100, max: 1000 }, { name: 'U0', unit: 'm/s', min: null, max: null }],
+  parameters: [
+    { name: 'Re', unit: null, min: 100, max: 1000 },
+    { name: 'U0', unit: 'm/s', min: null, max: null },
+  ],
 };
 
 describe('param/missing', () => {

@@ -18,10 +18,24 @@ const table: [string, number[], number[], number[], number[], number[]][] = [
   ['three equal stamps', [0, 1, 1, 1, 2], [], [], [2, 3], [0, 1, 2]],
   ['a restart at a stored time', [0, 1, 2, 3, 2, 3, 4], [], [4], [], [0, 1, 2, 3, 4]],
   ['a restart between stored times', [0, 1, 2, 3, 1.5, 2.5, 3.5], [], [4], [], [0, 1, 1.5, 2.5, 3.5]],
-  ['a restart after a variable step', [0.48, 0.49, 0.5, 0.513, 0.507, 0.52, 0.53], [], [4], [], [0.48, 0.49, 0.5, 0.507, 0.52, 0.53]],
+  [
+    'a restart after a variable step',
+    [0.48, 0.49, 0.5, 0.513, 0.507, 0.52, 0.53],
+    [],
+    [4],
+    [],
+    [0.48, 0.49, 0.5, 0.507, 0.52, 0.53],
+  ],
   ['a restart that ends early', [0, 1, 2, 3, 4, 1, 2], [], [5], [], [0, 1, 2]],
   ['a restart with coarser output', [0, 1, 2, 3, 4, 5, 2, 7, 12, 17], [], [6], [], [0, 1, 2, 7, 12, 17]],
-  ['a restart in a growing step', [...growing, growing[17], growing[18], growing[19], growing[19] * 1.5], [], [20], [], [...growing, growing[19] * 1.5]],
+  [
+    'a restart in a growing step',
+    [...growing, growing[17], growing[18], growing[19], growing[19] * 1.5],
+    [],
+    [20],
+    [],
+    [...growing, growing[19] * 1.5],
+  ],
   ['two restarts', [0, 1, 2, 3, 2, 3, 4, 5, 4, 5, 6], [], [4, 8], [], [0, 1, 2, 3, 4, 5, 6]],
   ['two files with the same times', [0, 1, 2, 0, 1, 2], [], [3], [], [0, 1, 2]],
   ['two swapped stamps', [0, 1, 3, 2, 4, 5], [3], [], [], [0, 1, 2, 3, 4, 5]],
@@ -85,26 +99,34 @@ describe('describeOrder', () => {
 
   it('always leaves strictly increasing stamps, and nothing to report of what it leaves', () => {
     fc.assert(
-      fc.property(fc.array(fc.oneof(fc.integer({ min: 0, max: 30 }), fc.double({ noNaN: false })), { maxLength: 80 }), (stamps) => {
-        const left = Float64Array.from(keptStamps(stamps));
-        expect(left.every((stamp, j) => j === 0 || stamp > left[j - 1])).toBe(true);
-        const again = describeOrder(left);
-        expect([again.backward, again.restarts, again.duplicates, again.undefinedStamps]).toEqual([[], [], [], []]);
-      }),
+      fc.property(
+        fc.array(fc.oneof(fc.integer({ min: 0, max: 30 }), fc.double({ noNaN: false })), { maxLength: 80 }),
+        (stamps) => {
+          const left = Float64Array.from(keptStamps(stamps));
+          expect(left.every((stamp, j) => j === 0 || stamp > left[j - 1])).toBe(true);
+          const again = describeOrder(left);
+          expect([again.backward, again.restarts, again.duplicates, again.undefinedStamps]).toEqual([[], [], [], []]);
+        },
+      ),
       { numRuns: 300 },
     );
   });
 
   it('finds every restart of a record with a steady step, wherever it falls', () => {
     fc.assert(
-      fc.property(fc.integer({ min: 3, max: 50 }), fc.double({ min: 0.05, max: 0.95, noNaN: true }), fc.integer({ min: 3, max: 40 }), (m, place, later) => {
-        const top = m - 1;
-        const back = place * top;
-        const stamps = [...uniform(m, 1), ...Array.from({ length: later + m }, (_, j) => back + j)];
-        const found = order(stamps);
-        expect(found.restarts.map((restart) => restart.index)).toEqual([m]);
-        expect([found.backward, found.duplicates]).toEqual([[], []]);
-      }),
+      fc.property(
+        fc.integer({ min: 3, max: 50 }),
+        fc.double({ min: 0.05, max: 0.95, noNaN: true }),
+        fc.integer({ min: 3, max: 40 }),
+        (m, place, later) => {
+          const top = m - 1;
+          const back = place * top;
+          const stamps = [...uniform(m, 1), ...Array.from({ length: later + m }, (_, j) => back + j)];
+          const found = order(stamps);
+          expect(found.restarts.map((restart) => restart.index)).toEqual([m]);
+          expect([found.backward, found.duplicates]).toEqual([[], []]);
+        },
+      ),
       { numRuns: 300 },
     );
   });

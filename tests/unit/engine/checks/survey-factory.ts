@@ -70,7 +70,9 @@ export function fieldSurvey(plan: FieldPlan): FieldSurvey {
     nodes: values[0]?.length ?? 0,
     min: Float64Array.from(finite, (snapshot) => (snapshot.length ? Math.min(...snapshot) : NaN)),
     max: Float64Array.from(finite, (snapshot) => (snapshot.length ? Math.max(...snapshot) : NaN)),
-    mean: Float64Array.from(finite, (snapshot) => (snapshot.length ? snapshot.reduce((a, b) => a + b, 0) / snapshot.length : NaN)),
+    mean: Float64Array.from(finite, (snapshot) =>
+      snapshot.length ? snapshot.reduce((a, b) => a + b, 0) / snapshot.length : NaN,
+    ),
     norm: Float64Array.from(finite, (snapshot) => Math.sqrt(snapshot.reduce((a, b) => a + b * b, 0))),
     nonFinite: Float64Array.from(values, (snapshot) => snapshot.filter((value) => !Number.isFinite(value)).length),
     firstNonFinite: Float64Array.from(values, (snapshot) => snapshot.findIndex((value) => !Number.isFinite(value))),
@@ -78,13 +80,24 @@ export function fieldSurvey(plan: FieldPlan): FieldSurvey {
       .map((value) => {
         const counts = Float64Array.from(values, (snapshot) => snapshot.filter((v) => v === value).length);
         const firstSnapshot = counts.findIndex((count) => count > 0);
-        return { value, declared: value === plan.declaredFill, counts, firstSnapshot, firstNode: firstSnapshot < 0 ? -1 : values[firstSnapshot].indexOf(value) };
+        return {
+          value,
+          declared: value === plan.declaredFill,
+          counts,
+          firstSnapshot,
+          firstNode: firstSnapshot < 0 ? -1 : values[firstSnapshot].indexOf(value),
+        };
       })
       .filter((candidate) => candidate.firstSnapshot >= 0),
     hash: values.map((snapshot) => createHash('sha256').update(Float64Array.from(snapshot)).digest('hex').slice(0, 16)),
-    stepChange: Float64Array.from(values, (snapshot, j) => (j === 0 ? 0 : Math.sqrt(snapshot.reduce((sum, value, i) => sum + (value - values[j - 1][i]) ** 2, 0)))),
+    stepChange: Float64Array.from(values, (snapshot, j) =>
+      j === 0 ? 0 : Math.sqrt(snapshot.reduce((sum, value, i) => sum + (value - values[j - 1][i]) ** 2, 0)),
+    ),
     changedNodes: (values[0] ?? []).filter((value, i) => values.some((snapshot) => snapshot[i] !== value)).length,
-    spread: Math.max(0, ...finite.map((snapshot) => (snapshot.length ? Math.max(...snapshot) - Math.min(...snapshot) : 0))),
+    spread: Math.max(
+      0,
+      ...finite.map((snapshot) => (snapshot.length ? Math.max(...snapshot) - Math.min(...snapshot) : 0)),
+    ),
     allocated: plan.allocated ?? null,
     trailingFill: trailingConstant(values),
   };
@@ -92,7 +105,9 @@ export function fieldSurvey(plan: FieldPlan): FieldSurvey {
 
 /** m snapshots of n values that all differ and never repeat. */
 export function movingValues(m: number, n = 4): number[][] {
-  return Array.from({ length: m }, (_, j) => Array.from({ length: n }, (_, i) => Math.sin(1 + 0.7 * i + 0.13 * j) + 0.01 * j));
+  return Array.from({ length: m }, (_, j) =>
+    Array.from({ length: n }, (_, i) => Math.sin(1 + 0.7 * i + 0.13 * j) + 0.01 * j),
+  );
 }
 
 export function uniform(m: number, step = 0.01, start = 0): number[] {
@@ -115,7 +130,12 @@ export function makeSurvey(plan: RecordPlan = {}): Survey {
     dtype: axis.dtype ?? 'float64',
     periodic: null,
   }));
-  const time: TimeSource | null = plan.time === undefined ? (stamps ? { kind: 'array', path: '/t', unit: plan.timeUnit === undefined ? 's' : plan.timeUnit } : null) : plan.time;
+  const time: TimeSource | null =
+    plan.time === undefined
+      ? stamps
+        ? { kind: 'array', path: '/t', unit: plan.timeUnit === undefined ? 's' : plan.timeUnit }
+        : null
+      : plan.time;
   const stored = axes.map((axis) => axis.name);
   return {
     contents: {
@@ -144,8 +164,22 @@ export function makeSurvey(plan: RecordPlan = {}): Survey {
     reading: {
       layout: plan.layout ?? 'time-first',
       time,
-      fields: fields.map((field, i) => ({ path: surveyed[i].path, name: surveyed[i].name, unit: surveyed[i].unit, axes: field.axes ?? ['time', ...stored], why: 'given by the test' })),
-      axes: axes.map((axis) => ({ name: axis.name, path: axis.path, edges: axis.edges ? `${axis.path}_edges` : null, unit: axis.unit, count: axis.count, periodic: null, why: 'given by the test' })),
+      fields: fields.map((field, i) => ({
+        path: surveyed[i].path,
+        name: surveyed[i].name,
+        unit: surveyed[i].unit,
+        axes: field.axes ?? ['time', ...stored],
+        why: 'given by the test',
+      })),
+      axes: axes.map((axis) => ({
+        name: axis.name,
+        path: axis.path,
+        edges: axis.edges ? `${axis.path}_edges` : null,
+        unit: axis.unit,
+        count: axis.count,
+        periodic: null,
+        why: 'given by the test',
+      })),
       spaceWeights: null,
       timeWeights: null,
       parameters: [],

@@ -19,7 +19,10 @@ describe('time/duplicate', () => {
 
   it('says so when the snapshots differ at equal stamps, and not when they are copies', () => {
     const values = movingValues(4);
-    const copies = judge(timeDuplicate, makeSubject({ stamps: [0, 1, 1, 2], fields: [{ values: [values[0], values[1], values[1], values[2]] }] }));
+    const copies = judge(
+      timeDuplicate,
+      makeSubject({ stamps: [0, 1, 1, 2], fields: [{ values: [values[0], values[1], values[1], values[2]] }] }),
+    );
     expect(copies[0].message).not.toContain('rounded too coarsely');
     const different = judge(timeDuplicate, makeSubject({ stamps: [0, 1, 1, 2], fields: [{ values }] }));
     expect(different[0].message).toContain('in 1 of them the fields differ');

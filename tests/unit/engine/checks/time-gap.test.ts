@@ -4,7 +4,8 @@ import { windowStep } from '#contract/recipe.ts';
 import { timeGap } from '../../../../server/engine/checks/time-gap.ts';
 import { judge, makeSubject, uniform } from './survey-factory.ts';
 
-const fromIntervals = (intervals: number[], start = 0) => intervals.reduce((stamps, interval) => [...stamps, stamps.at(-1)! + interval], [start]);
+const fromIntervals = (intervals: number[], start = 0) =>
+  intervals.reduce((stamps, interval) => [...stamps, stamps.at(-1)! + interval], [start]);
 const times = (count: number, value: number) => Array.from({ length: count }, () => value);
 const geometric = (count: number, ratio: number) => Array.from({ length: count }, (_, i) => ratio ** i);
 const found = (intervals: number[]) => judge(timeGap, makeSubject({ stamps: fromIntervals(intervals) }));

@@ -12,12 +12,21 @@ describe('time/missing', () => {
 
   it.each<[string, RecordPlan]>([
     ['a time vector', { stamps: uniform(5) }],
-    ['start and step given by a person', { stamps: uniform(5), time: { kind: 'generated', start: 0, step: 0.01, unit: null } }],
+    [
+      'start and step given by a person',
+      { stamps: uniform(5), time: { kind: 'generated', start: 0, step: 0.01, unit: null } },
+    ],
     ['a declared ensemble', { time: { kind: 'ensemble' } }],
     ['one snapshot', { fields: [{ values: movingValues(1) }] }],
     ['no snapshot', { fields: [{ values: [] }] }],
     ['no field', { fields: [] }],
-    ['a time vector that does not fit', { time: { kind: 'array', path: '/t', unit: 's' }, mismatches: [{ path: '/t', expected: '5', actual: '4', message: 'does not fit' }] }],
+    [
+      'a time vector that does not fit',
+      {
+        time: { kind: 'array', path: '/t', unit: 's' },
+        mismatches: [{ path: '/t', expected: '5', actual: '4', message: 'does not fit' }],
+      },
+    ],
   ])('is silent for %s', (_name, plan) => {
     expect(judge(timeMissing, makeSubject(plan))).toEqual([]);
   });

@@ -6,7 +6,8 @@ import { judge, makeSubject, uniform, type RecordPlan } from './survey-factory.t
 
 /** The second pair of intervals is 1 and 4: more than 2:1, so Simpson's end weight there is negative. */
 const jump: RecordPlan = { stamps: [0, 1, 2, 3, 7, 8, 9] };
-const found = (timeRule: TimeRuleId | null, plan: RecordPlan) => judge(timeNegativeWeights, makeSubject(plan, { timeRule }));
+const found = (timeRule: TimeRuleId | null, plan: RecordPlan) =>
+  judge(timeNegativeWeights, makeSubject(plan, { timeRule }));
 
 describe('time/negative-weights', () => {
   it('fires for Simpson where a pair of intervals differs by more than 2:1', () => {
@@ -34,7 +35,11 @@ describe('time/negative-weights', () => {
     ['Simpson on uniform stamps', 'simpson', { stamps: uniform(101) }],
     ['Simpson on an even number of uniform stamps', 'simpson', { stamps: uniform(100) }],
     ['Simpson where a pair differs by exactly 2:1', 'simpson', { stamps: [0, 1, 3, 4, 5] }],
-    ['Simpson on float32 stamps that jitter by rounding', 'simpson', { stamps: Float32Array.from(uniform(201, 0.01, 1e5)), stampType: 'float32' }],
+    [
+      'Simpson on float32 stamps that jitter by rounding',
+      'simpson',
+      { stamps: Float32Array.from(uniform(201, 0.01, 1e5)), stampType: 'float32' },
+    ],
     ['a rule that is not there yet', 'gauss-legendre', jump],
     ['provided weights where there are none', 'provided', jump],
     ['one stamp', 'simpson', { stamps: [1] }],

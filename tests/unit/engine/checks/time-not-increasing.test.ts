@@ -48,6 +48,8 @@ describe('time/not-increasing', () => {
 
   it('is silent on the end of a record that was never written', () => {
     const values = [...movingValues(3), ...movingValues(2).map((snapshot) => snapshot.map(() => 0))];
-    expect(judge(timeNotIncreasing, makeSubject({ stamps: [1, 2, 3, 0, 0], fields: [{ values }] }, { unwritten: 2 }))).toEqual([]);
+    expect(
+      judge(timeNotIncreasing, makeSubject({ stamps: [1, 2, 3, 0, 0], fields: [{ values }] }, { unwritten: 2 })),
+    ).toEqual([]);
   });
 });

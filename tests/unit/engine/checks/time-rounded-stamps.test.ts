@@ -5,9 +5,17 @@ import { judge, makeSubject, uniform, type RecordPlan } from './survey-factory.t
 describe('time/rounded-stamps', () => {
   it.each<[string, RecordPlan, string]>([
     ['float32 stamps', { stamps: Float32Array.from(uniform(1000, 0.001)), stampType: 'float32' }, 'float32'],
-    ['float32 stamps of 1e5 s with a step of 0.01 s', { stamps: Float32Array.from(uniform(200, 0.01, 1e5)), stampType: 'float32' }, 'float32'],
+    [
+      'float32 stamps of 1e5 s with a step of 0.01 s',
+      { stamps: Float32Array.from(uniform(200, 0.01, 1e5)), stampType: 'float32' },
+      'float32',
+    ],
     ['stamps that were float32 once', { stamps: Float32Array.from(uniform(1000, 0.001)) }, 'float32'],
-    ['stamps printed with 6 digits', { stamps: uniform(200, 0.0123456789, 1).map((stamp) => Number(stamp.toPrecision(6))) }, '5 decimals'],
+    [
+      'stamps printed with 6 digits',
+      { stamps: uniform(200, 0.0123456789, 1).map((stamp) => Number(stamp.toPrecision(6))) },
+      '5 decimals',
+    ],
   ])('fires for %s', (_name, plan, explainedBy) => {
     const [found, ...more] = judge(timeRoundedStamps, makeSubject(plan));
     expect(more).toEqual([]);

@@ -13,7 +13,10 @@ describe('time/uneven-spacing', () => {
     ['two rates', { stamps: [...uniform(20, 0.01), ...uniform(20, 0.05, 0.24)] }],
     ['a gap in a uniform record', { stamps: [...uniform(20, 1), ...uniform(20, 1, 30)] }],
     ['a shortened last step', { stamps: [...uniform(20, 1), 19.3] }],
-    ['months of 28 to 31 days', { stamps: [0, 31, 59, 90, 120, 151, 181, 212, 243, 273, 304, 334], timeUnit: 'days since 2001-01-01' }],
+    [
+      'months of 28 to 31 days',
+      { stamps: [0, 31, 59, 90, 120, 151, 181, 212, 243, 273, 304, 334], timeUnit: 'days since 2001-01-01' },
+    ],
     ['an adaptive step in float32', { stamps: Float32Array.from(adaptive), stampType: 'float32' }],
     ['an adaptive step printed with 6 digits', { stamps: printed(6, adaptive) }],
     ['three stamps', { stamps: [0, 1, 3] }],
@@ -28,7 +31,10 @@ describe('time/uneven-spacing', () => {
   it.each<[string, RecordPlan]>([
     ['uniform stamps', { stamps: uniform(100, 0.01) }],
     ['uniform stamps in float32', { stamps: Float32Array.from(uniform(1000, 0.001)), stampType: 'float32' }],
-    ['float32 stamps of 1e5 s with a step of 0.01 s', { stamps: Float32Array.from(uniform(200, 0.01, 1e5)), stampType: 'float32' }],
+    [
+      'float32 stamps of 1e5 s with a step of 0.01 s',
+      { stamps: Float32Array.from(uniform(200, 0.01, 1e5)), stampType: 'float32' },
+    ],
     ['uniform stamps printed with 6 digits', { stamps: printed(6, uniform(200, 0.0123456789)) }],
     ['uniform stamps with one repeated', { stamps: [0, 1, 2, 2, 3, 4] }],
     ['uniform stamps after a restart at a stored time', { stamps: [...uniform(50, 0.5), ...uniform(40, 0.5, 20)] }],
@@ -42,7 +48,10 @@ describe('time/uneven-spacing', () => {
   });
 
   it('says by how much, in the unit of the time', () => {
-    const [found] = judge(timeUnevenSpacing, makeSubject({ stamps: [0, 1, 2, 3, 7], timeUnit: 'days since 2001-01-01' }));
+    const [found] = judge(
+      timeUnevenSpacing,
+      makeSubject({ stamps: [0, 1, 2, 3, 7], timeUnit: 'days since 2001-01-01' }),
+    );
     expect(found.message).toContain('between 1 days and 4 days, 4 to 1');
     expect(found.evidence).toMatchObject({ indices: [3], times: [3], shortest: 1, widest: 4 });
   });

@@ -8,9 +8,52 @@ const still = [1, 2, 3, 4];
 describe('value/constant-field', () => {
   it.each<[string, RecordPlan, { inTime: boolean; inSpace: boolean }]>([
     ['a steady field', { fields: [{ values: [still, still, still] }] }, { inTime: true, inSpace: false }],
-    ['a field uniform in space', { fields: [{ values: [[1, 1], [2, 2], [3, 3]] }] }, { inTime: false, inSpace: true }],
-    ['one value everywhere and always', { fields: [{ values: [[7, 7], [7, 7]] }] }, { inTime: true, inSpace: true }],
-    ['a velocity component that is zero', { fields: [{ values: movingValues(3) }, { name: 'w', values: [[0, 0, 0, 0], [0, 0, 0, 0], [0, 0, 0, 0]] }] }, { inTime: true, inSpace: true }],
+    [
+      'a field uniform in space',
+      {
+        fields: [
+          {
+            values: [
+              [1, 1],
+              [2, 2],
+              [3, 3],
+            ],
+          },
+        ],
+      },
+      { inTime: false, inSpace: true },
+    ],
+    [
+      'one value everywhere and always',
+      {
+        fields: [
+          {
+            values: [
+              [7, 7],
+              [7, 7],
+            ],
+          },
+        ],
+      },
+      { inTime: true, inSpace: true },
+    ],
+    [
+      'a velocity component that is zero',
+      {
+        fields: [
+          { values: movingValues(3) },
+          {
+            name: 'w',
+            values: [
+              [0, 0, 0, 0],
+              [0, 0, 0, 0],
+              [0, 0, 0, 0],
+            ],
+          },
+        ],
+      },
+      { inTime: true, inSpace: true },
+    ],
     ['one uniform snapshot', { fields: [{ values: [[5, 5, 5]] }] }, { inTime: false, inSpace: true }],
   ])('fires once for %s', (_name, plan, evidence) => {
     const [found, ...more] = judge(valueConstantField, makeSubject(plan));
@@ -19,8 +62,14 @@ describe('value/constant-field', () => {
   });
 
   it('offers to select the other fields, and nothing when there is no other', () => {
-    const [found] = judge(valueConstantField, makeSubject({ fields: [{ values: movingValues(3) }, { name: 'w', values: [still, still, still] }] }));
-    expect(selectStep.pick({ step: true, fields: true }).parse({ step: found.remedy!.step, ...found.remedy!.parameters }).fields).toEqual(['u']);
+    const [found] = judge(
+      valueConstantField,
+      makeSubject({ fields: [{ values: movingValues(3) }, { name: 'w', values: [still, still, still] }] }),
+    );
+    expect(
+      selectStep.pick({ step: true, fields: true }).parse({ step: found.remedy!.step, ...found.remedy!.parameters })
+        .fields,
+    ).toEqual(['u']);
     expect(judge(valueConstantField, makeSubject({ fields: [{ values: [still, still] }] }))[0].remedy).toBeNull();
   });
 
@@ -28,9 +77,35 @@ describe('value/constant-field', () => {
     ['a moving field', {}, 0],
     ['one snapshot that varies in space', { fields: [{ values: [still] }] }, 0],
     ['a signal at one point', { fields: [{ values: [[1], [2], [3]] }] }, 0],
-    ['a change in the last bit', { fields: [{ values: [[1, 2], [1, 2 + 2 ** -51]] }] }, 0],
+    [
+      'a change in the last bit',
+      {
+        fields: [
+          {
+            values: [
+              [1, 2],
+              [1, 2 + 2 ** -51],
+            ],
+          },
+        ],
+      },
+      0,
+    ],
     ['a fluid at rest that starts to move', { fields: [{ values: [[0, 0, 0, 0], ...movingValues(2)] }] }, 0],
-    ['nothing but NaN', { fields: [{ values: [[NaN, NaN], [NaN, NaN]] }] }, 0],
+    [
+      'nothing but NaN',
+      {
+        fields: [
+          {
+            values: [
+              [NaN, NaN],
+              [NaN, NaN],
+            ],
+          },
+        ],
+      },
+      0,
+    ],
     ['no snapshot', { fields: [{ values: [] }] }, 0],
     ['snapshots without nodes', { fields: [{ values: [[], []] }] }, 0],
   ])('is silent for %s', (_name, plan, unwritten) => {

@@ -11,7 +11,21 @@ function withValue(value: number, places: [number, number][], m = 6): number[][]
 
 describe('value/non-finite', () => {
   it('says how many, and where and when first seen', () => {
-    const [found, ...more] = judge(valueNonFinite, makeSubject({ stamps: uniform(6), fields: [{ values: withValue(NaN, [[2, 3], [4, 0], [4, 1]]) }] }));
+    const [found, ...more] = judge(
+      valueNonFinite,
+      makeSubject({
+        stamps: uniform(6),
+        fields: [
+          {
+            values: withValue(NaN, [
+              [2, 3],
+              [4, 0],
+              [4, 1],
+            ]),
+          },
+        ],
+      }),
+    );
     expect(more).toEqual([]);
     expect(found.path).toBe('/u');
     expect(found.evidence).toMatchObject({ indices: [2, 4], count: 3, snapshots: 2, firstNode: 3, place: 'x = 1.5 m' });
@@ -22,18 +36,42 @@ describe('value/non-finite', () => {
   it('tells the place on a grid of two axes', () => {
     const values = movingValues(3, 6);
     values[1][4] = Infinity;
-    const [found] = judge(valueNonFinite, makeSubject({ fields: [{ values }], axes: [{ name: 'y', nodes: [10, 20] }, { name: 'x', nodes: [1, 2, 3] }] }));
+    const [found] = judge(
+      valueNonFinite,
+      makeSubject({
+        fields: [{ values }],
+        axes: [
+          { name: 'y', nodes: [10, 20] },
+          { name: 'x', nodes: [1, 2, 3] },
+        ],
+      }),
+    );
     expect(found.evidence.place).toBe('y = 20 m, x = 2 m');
   });
 
   it('takes the same number in every snapshot for a mask, and does not offer to drop the record', () => {
-    const [found] = judge(valueNonFinite, makeSubject({ fields: [{ values: withValue(NaN, uniform(6, 1).map((j): [number, number] => [j, 1])) }] }));
+    const [found] = judge(
+      valueNonFinite,
+      makeSubject({
+        fields: [
+          {
+            values: withValue(
+              NaN,
+              uniform(6, 1).map((j): [number, number] => [j, 1]),
+            ),
+          },
+        ],
+      }),
+    );
     expect(found.message).toContain('probably a mask');
     expect(found.remedy).toBeNull();
   });
 
   it('fires for a run that diverged at its end', () => {
-    const [found] = judge(valueNonFinite, makeSubject({ fields: [{ values: [...movingValues(6), [NaN, NaN, NaN, NaN]] }] }));
+    const [found] = judge(
+      valueNonFinite,
+      makeSubject({ fields: [{ values: [...movingValues(6), [NaN, NaN, NaN, NaN]] }] }),
+    );
     expect(found.evidence).toMatchObject({ indices: [6], count: 4 });
   });
 
@@ -42,7 +80,11 @@ describe('value/non-finite', () => {
     ['the largest double', { fields: [{ values: withValue(Number.MAX_VALUE, [[1, 1]]) }] }, 0],
     ['one snapshot', { fields: [{ values: [[1, 2]] }] }, 0],
     ['no value', { fields: [{ values: [] }] }, 0],
-    ['an unwritten end of NaN', { fields: [{ values: [...movingValues(6), [NaN, NaN, NaN, NaN]], declaredFill: NaN }] }, 1],
+    [
+      'an unwritten end of NaN',
+      { fields: [{ values: [...movingValues(6), [NaN, NaN, NaN, NaN]], declaredFill: NaN }] },
+      1,
+    ],
   ])('is silent for %s', (_name, plan, unwritten) => {
     expect(judge(valueNonFinite, makeSubject(plan, { unwritten }))).toEqual([]);
   });

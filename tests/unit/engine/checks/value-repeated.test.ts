@@ -7,7 +7,10 @@ const pattern = (indices: number[]) => indices.map((index) => movingValues(30)[i
 
 describe('value/repeated', () => {
   it('names the later snapshot and the one that it repeats', () => {
-    const [found, ...more] = judge(valueRepeated, makeSubject({ stamps: uniform(5), fields: [{ values: pattern([0, 1, 2, 0, 3]) }] }));
+    const [found, ...more] = judge(
+      valueRepeated,
+      makeSubject({ stamps: uniform(5), fields: [{ values: pattern([0, 1, 2, 0, 3]) }] }),
+    );
     expect(more).toEqual([]);
     expect(found.evidence).toMatchObject({ indices: [3], count: 1, repeats: [0] });
     expect(orderStep.parse({ step: found.remedy!.step, ...found.remedy!.parameters }).drop[0].indices).toEqual([3]);
@@ -28,12 +31,34 @@ describe('value/repeated', () => {
     ['a moving record', { stamps: uniform(8) }, 0],
     ['copies side by side, which are value/frozen', { fields: [{ values: pattern([0, 1, 1, 1, 2]) }] }, 0],
     ['a constant field', { fields: [{ values: pattern([0, 0, 0]) }] }, 0],
-    ['the overlap of a restart that computed the same again', { stamps: [0, 1, 2, 3, 2, 3, 4], fields: [{ values: pattern([0, 1, 2, 3, 2, 3, 4]) }] }, 0],
-    ['snapshots of nothing but NaN', { fields: [{ values: [[NaN, NaN], [1, 2], [NaN, NaN]] }] }, 0],
+    [
+      'the overlap of a restart that computed the same again',
+      { stamps: [0, 1, 2, 3, 2, 3, 4], fields: [{ values: pattern([0, 1, 2, 3, 2, 3, 4]) }] },
+      0,
+    ],
+    [
+      'snapshots of nothing but NaN',
+      {
+        fields: [
+          {
+            values: [
+              [NaN, NaN],
+              [1, 2],
+              [NaN, NaN],
+            ],
+          },
+        ],
+      },
+      0,
+    ],
     ['one snapshot', { fields: [{ values: pattern([0]) }] }, 0],
     ['two equal snapshots', { fields: [{ values: pattern([0, 0]) }] }, 0],
     ['no snapshot', { fields: [{ values: [] }] }, 0],
-    ['an unwritten end that equals the first snapshot of zeros', { fields: [{ values: [[0, 0, 0, 0], ...movingValues(4), [0, 0, 0, 0]] }] }, 1],
+    [
+      'an unwritten end that equals the first snapshot of zeros',
+      { fields: [{ values: [[0, 0, 0, 0], ...movingValues(4), [0, 0, 0, 0]] }] },
+      1,
+    ],
   ])('is silent for %s', (_name, plan, unwritten) => {
     expect(judge(valueRepeated, makeSubject(plan, { unwritten }))).toEqual([]);
   });

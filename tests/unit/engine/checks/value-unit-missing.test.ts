@@ -6,13 +6,19 @@ const values = movingValues(3);
 
 describe('value/unit-missing', () => {
   it('names each field without a unit', () => {
-    const fields = [{ values, unit: null }, { name: 'v', values, unit: ' ' }, { name: 'p', values, unit: 'Pa' }];
+    const fields = [
+      { values, unit: null },
+      { name: 'v', values, unit: ' ' },
+      { name: 'p', values, unit: 'Pa' },
+    ];
     expect(judge(valueUnitMissing, makeSubject({ fields })).map((found) => found.path)).toEqual(['/u', '/v']);
   });
 
-  it("says which unit the campaign expects", () => {
+  it('says which unit the campaign expects', () => {
     const demands = { parameters: [], fields: [{ name: 'u', unit: 'm s-1', min: null, max: null, required: true }] };
-    expect(judge(valueUnitMissing, makeSubject({ fields: [{ values, unit: null }] }, { demands }))[0].message).toContain('expects m s-1');
+    expect(
+      judge(valueUnitMissing, makeSubject({ fields: [{ values, unit: null }] }, { demands }))[0].message,
+    ).toContain('expects m s-1');
   });
 
   it.each(['1', '-', 'm/s', 'degC'])('takes "%s" for a unit', (unit) => {

@@ -1,0 +1,10 @@
+import tailwindcss from '@tailwindcss/vite';
+import react from '@vitejs/plugin-react';
+import { defineConfig } from 'vite';
+
+export default defineConfig({
+  plugins: [react(), tailwindcss()],
+  publicDir: 'src/public',
+  build: { outDir: 'dist/web', emptyOutDir: true, target: 'es2022', sourcemap: false, chunkSizeWarningLimit: 900 },
+  server: { proxy: { '/api': `http://127.0.0.1:${process.env.PORT ?? 8080}` } },
+});
