@@ -29,7 +29,8 @@ function pagesFolder(): string | null {
   return null;
 }
 
-export function createApp(app: App): Express {
+/** `pages`: the folder of the built pages; null while there are none (npm run dev serves them itself). */
+export function createApp(app: App, pages: string | null = pagesFolder()): Express {
   const web = express();
   const auth = createAuth({ ...app, record: (event, person, requestId) => recordSignIn(app, event, person, requestId) });
   const secure = app.config.url.startsWith('https://');
@@ -56,7 +57,6 @@ export function createApp(app: App): Express {
   web.use('/api', express.json({ limit: '2mb' }));
   for (const router of [accountRouter, campaignRouter, deliveryRouter, archiveRouter, datasetRouter, releaseRouter, operationRouter]) web.use(router(app));
   web.all('/api{/*any}', noSuchRoute);
-  const pages = pagesFolder();
   if (pages) {
     web.use('/assets', express.static(`${pages}/assets`, { immutable: true, maxAge: '1y', fallthrough: false }));
     web.use(express.static(pages, { index: false, maxAge: 0 }));

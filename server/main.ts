@@ -1,6 +1,7 @@
 /** The web server. */
 import { once } from 'node:events';
 import { createServer } from 'node:http';
+import type { AddressInfo } from 'node:net';
 import { createApp } from './app.ts';
 import { readConfig } from './config.ts';
 import { openParts } from './parts.ts';
@@ -14,7 +15,7 @@ server.requestTimeout = 0;
 server.headersTimeout = 30_000;
 server.listen(config.port, config.host);
 await once(server, 'listening');
-parts.log.info({ url: config.url }, 'listening');
+parts.log.info({ url: config.url, port: (server.address() as AddressInfo).port }, 'listening');
 
 let stopping = false;
 async function stop(): Promise<void> {

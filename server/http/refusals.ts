@@ -1,5 +1,4 @@
 /** Errors on the wire: RFC 9457 problem documents with the code's status; unknown errors are logged and told without detail. */
-import { ZodError } from 'zod';
 import type { ErrorRequestHandler, RequestHandler } from 'express';
 import { PennyweightError, statusOf, type Problem } from '#contract/error.ts';
 import type { App } from '../services/context.ts';
@@ -22,7 +21,9 @@ function translate(error: unknown): PennyweightError | null {
   if (type === 'entity.parse.failed') return new PennyweightError('invalid-input', 'The body is not valid JSON.');
   if (type === 'entity.too.large') return new PennyweightError('file-too-large', 'The body of this request is too large: send archives by the upload route.');
   if (error instanceof URIError || status === 400) return new PennyweightError('invalid-input', 'The address is not valid.');
-  if (error instanceof ZodError) return null;
+  if (status === 404) return new PennyweightError('not-found', 'There is no such page or file: reload the page.');
+  if (status === 415) return new PennyweightError('unsupported-format', 'The body is in a character set or compression that is not read here: send UTF-8, plain or gzip.');
+  // An answer that breaks its own contract (ZodError) is a fault of ours, like all else.
   return null;
 }
 

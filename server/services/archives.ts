@@ -5,7 +5,7 @@ import { about } from '#contract/access.ts';
 import type { Archive, ArchiveSummary } from '#contract/archive.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { Queryable } from '../db/database.ts';
-import { archive, archiveFile, campaign, dataset, draft, finding, run } from '../db/schema/index.ts';
+import { archive, archiveFile, campaign, dataset, draft, finding, job, run } from '../db/schema/index.ts';
 import type { routes } from '#contract/routes.ts';
 import { recordAudit } from './audit.ts';
 import { campaignBySlug } from './campaign-lookup.ts';
@@ -97,16 +97,18 @@ export async function enqueueCheck(app: App, tx: Queryable, caller: Caller, row:
   await tx.update(archive).set({ state: 'checking', jobId }).where(eq(archive.id, row.id));
 }
 
-/** Refuses to touch what is withdrawn or being checked. */
-export function mustBeSettled(row: ArchiveRow): void {
+/** Refuses to touch what is withdrawn, or what a job is at; a check that failed or was cancelled stands in nobody's way. */
+export async function mustBeSettled(tx: Queryable, row: ArchiveRow): Promise<void> {
   if (row.state === 'withdrawn') throw new PennyweightError('wrong-state', 'This archive is withdrawn: hand it in again if it is needed.');
-  if (row.state === 'checking') throw new PennyweightError('wrong-state', 'This archive is being checked: wait until that is done.');
+  if (row.state !== 'checking' || !row.jobId) return;
+  const [busy] = await tx.select({ state: job.state }).from(job).where(and(eq(job.id, row.jobId), inArray(job.state, ['queued', 'running'])));
+  if (busy) throw new PennyweightError('wrong-state', 'This archive is being checked: wait until that is done.', { job: row.jobId });
 }
 
 export async function recheckArchive(app: App, caller: Caller, id: string): Promise<Archive> {
   const { row } = await findArchive(app, caller, id);
   authorise(caller, 'check', 'Archive', row);
-  mustBeSettled(row);
+  await mustBeSettled(app.db, row);
   await app.db.transaction(async (tx) => {
     await enqueueCheck(app, tx, caller, row);
     await recordAudit(tx, caller, { action: 'archive.check-again', objectType: 'archive', objectId: id, label: row.name, campaignId: row.campaignId });
@@ -117,7 +119,7 @@ export async function recheckArchive(app: App, caller: Caller, id: string): Prom
 export async function putRunParameters(app: App, caller: Caller, id: string, parameters: Record<string, number>, reason: string): Promise<Archive> {
   const { row, run: its } = await findArchive(app, caller, id);
   authorise(caller, 'correct', 'Archive', row);
-  mustBeSettled(row);
+  await mustBeSettled(app.db, row);
   await app.db.transaction(async (tx) => {
     await tx.update(run).set({ parameters }).where(eq(run.id, its.id));
     await enqueueCheck(app, tx, caller, row);
@@ -129,7 +131,7 @@ export async function putRunParameters(app: App, caller: Caller, id: string, par
 export async function withdrawArchive(app: App, caller: Caller, id: string, reason: string): Promise<Archive> {
   const { row } = await findArchive(app, caller, id);
   authorise(caller, 'withdraw', 'Archive', row);
-  mustBeSettled(row);
+  await mustBeSettled(app.db, row);
   await app.db.transaction(async (tx) => {
     await tx.update(archive).set({ state: 'withdrawn', withdrawnReason: reason }).where(eq(archive.id, id));
     await recordAudit(tx, caller, { action: 'archive.withdraw', objectType: 'archive', objectId: id, label: row.name, campaignId: row.campaignId, before: { state: row.state }, after: { state: 'withdrawn' }, reason });

@@ -38,7 +38,7 @@ export async function tryReading(app: App, caller: Caller, id: string, reading: 
 export async function putArchiveReading(app: App, caller: Caller, id: string, input: { reading: Reading; reason: string; saveForSolver: boolean }): Promise<Archive> {
   const { row, run } = await findArchive(app, caller, id);
   authorise(caller, 'correct', 'Archive', row);
-  mustBeSettled(row);
+  await mustBeSettled(app.db, row);
   const misfits = await withArchive(app, id, (open) => open.fits(input.reading));
   if (misfits.length > 0) throw new PennyweightError('reading-mismatch', `This reading does not fit the archive: ${misfits[0].message}`, { misfits });
   if (input.saveForSolver && run.solver === '') throw new PennyweightError('invalid-input', 'The run names no solver, so its reading cannot be saved for one.');

@@ -4,7 +4,7 @@ import { StatusMark, type MarkKind } from './StatusMark.tsx';
 
 interface Props {
   /** the kind of thing, above its name */
-  kicker?: string;
+  kicker?: React.ReactNode;
   title: string;
   lead?: React.ReactNode;
   status?: { kind: MarkKind; label: string } | React.ReactElement;

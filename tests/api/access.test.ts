@@ -32,7 +32,10 @@ beforeAll(async () => {
 
   const worker = startWorker(app);
   const prepared = await makeGustCampaign(app, here, people)
-    .then(async (gust) => ({ gust, corrected: await gust.handIn(), withdrawn: await gust.handIn(), submitted: await gust.submitDraft(gust.archive) }))
+    .then(async (gust) => {
+      const [corrected, withdrawn, submitted] = await Promise.all([gust.handIn(), gust.handIn(), gust.submitDraft(gust.archive)]);
+      return { gust, corrected, withdrawn, submitted };
+    })
     // From here on jobs wait: what a walk over all callers changes is to stay as it is.
     .finally(() => worker.stop());
   const { gust, corrected, withdrawn, submitted } = prepared;

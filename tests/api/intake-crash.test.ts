@@ -49,11 +49,18 @@ function record(megabytes: number): Buffer {
 }
 
 describe('the web server, killed', () => {
-  it('in the middle of a file: what is on the disk counts, and the rest follows', { timeout: 120_000 }, async () => {
+  let server: ServerProcess;
+  beforeAll(async () => {
+    server = await start();
+  }, 60_000);
+  afterAll(async () => {
+    expect(await server.stop()).toBe(0);
+  });
+
+  it('in the middle of a file: what is on the disk counts, and the rest follows', { timeout: 90_000 }, async () => {
     const bytes = randomBytes(8_000_000);
     const delivery = await announce(bytes);
     const { id } = delivery.files[0];
-    let server = await start();
     await senderTo(server).begin(delivery);
     const { request, answered } = senderTo(server).openPatch(id, 0, bytes.length);
     request.write(bytes.subarray(0, 5_000_000));
@@ -63,43 +70,31 @@ describe('the web server, killed', () => {
     const { size } = await stat(received(id));
 
     server = await start();
-    try {
-      expect(await senderTo(server).offset(id)).toBe(size);
-      expect((await senderTo(server).patch(id, size, bytes.subarray(size))).status).toBe(204);
-      expect(await look(delivery)).toMatchObject({ state: 'complete', files: [{ sha256: sha256(bytes) }] });
-      expect((await app.parts.storage.get(sha256(bytes))).equals(bytes)).toBe(true);
-    } finally {
-      expect(await server.stop()).toBe(0);
-    }
+    expect(await senderTo(server).offset(id)).toBe(size);
+    expect((await senderTo(server).patch(id, size, bytes.subarray(size))).status).toBe(204);
+    expect(await look(delivery)).toMatchObject({ state: 'complete', files: [{ sha256: sha256(bytes) }] });
+    expect((await app.parts.storage.get(sha256(bytes))).equals(bytes)).toBe(true);
   });
 
-  it('at its last byte, at several moments: one archive, all bytes', { timeout: 240_000 }, async () => {
-    for (const millis of [0, 8, 40]) {
-      const bytes = randomBytes(3_000_000);
-      const delivery = await announce(bytes);
-      const { id } = delivery.files[0];
-      let server: ServerProcess = await start();
-      await senderTo(server).begin(delivery);
-      await senderTo(server).patch(id, 0, bytes.subarray(0, 2_999_990));
-      const last = senderTo(server).patch(id, 2_999_990, bytes.subarray(2_999_990)).catch(() => null);
-      await wait(millis);
-      await server.kill();
-      await last;
-      const half = await archivesOf(delivery);
-      if (half.length > 0) expect((await look(delivery)).state).toBe('complete');
+  it('at its last byte: one archive, all bytes', { timeout: 90_000 }, async () => {
+    const bytes = randomBytes(3_000_000);
+    const delivery = await announce(bytes);
+    const { id } = delivery.files[0];
+    await senderTo(server).begin(delivery);
+    await senderTo(server).patch(id, 0, bytes.subarray(0, 2_999_990));
+    const last = senderTo(server).patch(id, 2_999_990, bytes.subarray(2_999_990)).catch(() => null);
+    await wait(10);
+    await server.kill();
+    await last;
+    if ((await archivesOf(delivery)).length > 0) expect((await look(delivery)).state).toBe('complete');
 
-      server = await start();
-      try {
-        const offset = await senderTo(server).offset(id);
-        if (offset < bytes.length) await senderTo(server).patch(id, offset, bytes.subarray(offset));
-        expect(await look(delivery)).toMatchObject({ state: 'complete', files: [{ state: 'verified', sha256: sha256(bytes) }] });
-        expect(await archivesOf(delivery)).toHaveLength(1);
-        expect((await app.parts.storage.get(sha256(bytes))).equals(bytes)).toBe(true);
-        await expect(stat(received(id))).rejects.toMatchObject({ code: 'ENOENT' });
-      } finally {
-        await server.stop();
-      }
-    }
+    server = await start();
+    const offset = await senderTo(server).offset(id);
+    if (offset < bytes.length) await senderTo(server).patch(id, offset, bytes.subarray(offset));
+    expect(await look(delivery)).toMatchObject({ state: 'complete', files: [{ state: 'verified', sha256: sha256(bytes) }] });
+    expect(await archivesOf(delivery)).toHaveLength(1);
+    expect((await app.parts.storage.get(sha256(bytes))).equals(bytes)).toBe(true);
+    await expect(stat(received(id))).rejects.toMatchObject({ code: 'ENOENT' });
   });
 });
 
@@ -185,75 +180,52 @@ describe('what a killed web server left at each step of a hand-in', () => {
   });
 });
 
-describe('the worker, killed', () => {
-  const jobOf = async (delivery: Delivery) => {
-    const [row] = await app.parts.db.select({ job }).from(job).innerJoin(archive, eq(archive.jobId, job.id)).where(eq(archive.deliveryId, delivery.id));
-    return row.job;
-  };
-
-  it('in the middle of a check: the next one takes it up at once', { timeout: 240_000 }, async () => {
-    const bytes = record(160);
+describe('the worker', () => {
+  let worker: ServerProcess;
+  /** An archive with its check in the queue. */
+  async function queuedCheck(): Promise<{ archive: string; state: () => Promise<string>; job: () => Promise<typeof job.$inferSelect> }> {
+    const bytes = record(32);
     const delivery = await announce(bytes, 'X.npy');
     await senderTo(app).send(delivery, bytes);
-    let worker = await startProcess('worker', app.parts.config);
-    await expect.poll(async () => (await jobOf(delivery)).state, { timeout: 30_000, interval: 20 }).toBe('running');
-    await worker.kill();
-    expect((await jobOf(delivery)).state).toBe('running');
+    const [row] = await archivesOf(delivery);
+    const itsJob = async () => (await app.parts.db.select().from(job).where(eq(job.id, row.jobId!)))[0];
+    return { archive: row.id, job: itsJob, state: async () => (await itsJob()).state };
+  }
+  const archiveRow = async (id: string) => (await app.parts.db.select().from(archive).where(eq(archive.id, id)))[0];
 
-    worker = await startProcess('worker', app.parts.config);
-    await expect.poll(async () => (await jobOf(delivery)).state, { timeout: 60_000 }).toBe('done');
-    expect((await jobOf(delivery)).attempts).toBe(2);
-    expect((await archivesOf(delivery))[0]).toMatchObject({ state: 'checked', snapshots: 64 });
-    expect(await worker.stop()).toBe(0);
-    const left = await app.parts.db.select().from(job).where(sql`${job.state} in ('queued', 'running')`);
-    expect(left).toEqual([]);
-  });
-
-  it('lets nobody work beside it, and its successor waits for its end', { timeout: 120_000 }, async () => {
+  it('works alone; killed in the middle of a check, its successor takes that up at once', { timeout: 120_000 }, async () => {
     const first = await startProcess('worker', app.parts.config);
-    const second = startProcess('worker', app.parts.config);
-    await wait(5000);
-    const early = await Promise.race([second.then(() => true), wait(10, false)]);
-    expect(early).toBe(false);
+    const waiting = startProcess('worker', app.parts.config);
+    const { archive: id, state, job: itsJob } = await queuedCheck();
+    await expect.poll(state, { timeout: 30_000, interval: 20 }).toBe('running');
+    expect(await Promise.race([waiting.then(() => 'working'), wait(10, 'waiting')])).toBe('waiting');
     await first.kill();
-    expect(await (await second).stop()).toBe(0);
+    expect(await state()).toBe('running');
+
+    worker = await waiting;
+    await expect.poll(state, { timeout: 60_000 }).toBe('done');
+    expect((await itsJob()).attempts).toBe(2);
+    expect(await archiveRow(id)).toMatchObject({ state: 'checked', snapshots: 64 });
   });
 
-  it('or asked to end: the job goes on with the next one', { timeout: 240_000 }, async () => {
-    const bytes = record(161);
-    const delivery = await announce(bytes, 'X.npy');
-    await senderTo(app).send(delivery, bytes);
-    let worker = await startProcess('worker', app.parts.config);
-    await expect.poll(async () => (await jobOf(delivery)).state, { timeout: 30_000, interval: 20 }).toBe('running');
+  it('notices within a second that a job was cancelled, and stores nothing of it', { timeout: 90_000 }, async () => {
+    const { archive: id, state, job: itsJob } = await queuedCheck();
+    await expect.poll(state, { timeout: 30_000, interval: 20 }).toBe('running');
+    await app.founder.call(routes.cancelJob, { params: { job: (await itsJob()).id } });
+    await wait(2000);
+    expect(await state()).toBe('cancelled');
+    expect(await archiveRow(id)).toMatchObject({ state: 'checking', contents: null });
+    // Nothing of it stands in the way of the next check.
+    const again = await contributor.call(routes.recheckArchive, { params: { archive: id } });
+    await expect.poll(async () => (await contributor.call(routes.getJob, { params: { job: again.jobId! } })).state, { timeout: 60_000 }).toBe('done');
+    expect(await archiveRow(id)).toMatchObject({ state: 'checked' });
+  });
+
+  it('leaves nothing stuck, and when it is asked to end its job waits for the next one', { timeout: 90_000 }, async () => {
+    expect(await app.parts.db.select().from(job).where(sql`${job.state} = 'running'`)).toEqual([]);
+    const { state } = await queuedCheck();
+    await expect.poll(state, { timeout: 30_000, interval: 20 }).toBe('running');
     expect(await worker.stop()).toBe(0);
-    expect(['queued', 'done']).toContain((await jobOf(delivery)).state);
-    worker = await startProcess('worker', app.parts.config);
-    await expect.poll(async () => (await jobOf(delivery)).state, { timeout: 60_000 }).toBe('done');
-    await worker.stop();
-  });
-});
-
-describe('a job that is cancelled', () => {
-  it('ends within a second or so, and stores nothing', { timeout: 120_000 }, async () => {
-    const bytes = record(162);
-    const delivery = await announce(bytes, 'X.npy');
-    await senderTo(app).send(delivery, bytes);
-    const worker = await startProcess('worker', app.parts.config);
-    try {
-      const { jobId, id } = (await archivesOf(delivery))[0];
-      const state = async () => (await app.founder.call(routes.getJob, { params: { job: jobId! } })).state;
-      await expect.poll(state, { timeout: 30_000, interval: 20 }).toBe('running');
-      await app.founder.call(routes.cancelJob, { params: { job: jobId! } });
-      expect(await state()).toBe('cancelled');
-      await wait(3000);
-      expect(await state()).toBe('cancelled');
-      expect((await archivesOf(delivery))[0]).toMatchObject({ state: 'checking', contents: null });
-      // Nothing of it stands in the way of the next check.
-      const again = await contributor.call(routes.recheckArchive, { params: { archive: id } });
-      await expect.poll(async () => (await contributor.call(routes.getJob, { params: { job: again.jobId! } })).state, { timeout: 60_000 }).toBe('done');
-      expect((await archivesOf(delivery))[0].state).toBe('checked');
-    } finally {
-      await worker.stop();
-    }
+    expect(['queued', 'done']).toContain(await state());
   });
 });

@@ -31,7 +31,7 @@ export class TusSender {
   }
 
   async call(method: string, path: string, headers: Record<string, string>, body?: Uint8Array): Promise<Answer> {
-    return answer(await fetch(this.url + path, { method, headers: { ...version, ...this.credentials, ...headers }, body }));
+    return answer(await fetch(this.url + path, { method, headers: { ...version, ...this.credentials, ...headers }, body: body as BodyInit | undefined }));
   }
 
   /** Begins the upload of an announced file; `headers` overrule what a well-behaved sender says. */

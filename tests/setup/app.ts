@@ -95,7 +95,7 @@ function visitorAt(url: string, headers: Record<string, string>): Visitor {
   };
 }
 
-export async function createTestApp(options: { config?: Partial<Config>; log?: Logger } = {}): Promise<TestApp> {
+export async function createTestApp(options: { config?: Partial<Config>; log?: Logger; pages?: string } = {}): Promise<TestApp> {
   const database = await createTestDatabase();
   const storage = await mkdtemp(join(tmpdir(), 'pennyweight-test-'));
   // The address must be known before the application is made: sign-in accepts its own origin only.
@@ -107,7 +107,7 @@ export async function createTestApp(options: { config?: Partial<Config>; log?: L
     demo: true, smtp: null, mailFrom: 'Pennyweight <pennyweight@localhost>', logLevel: 'silent', ...options.config,
   });
   const parts = options.log ? { ...opened, log: options.log } : opened;
-  const web = createApp(parts);
+  const web = createApp(parts, options.pages);
   server.on('request', (req, res) => void web(req, res));
 
   const visitor = (headers: Record<string, string> = {}) => visitorAt(url, { origin: url, ...headers });
