@@ -19,7 +19,7 @@ export default function Beam({ stamps, count, unit, weights, rule, marks, split,
   const [scale, setScale] = useState<AxisScale>('linear');
   const [ownView, setOwnView] = useState<View | null>(null);
   const [tableOpen, setTableOpen] = useState(false);
-  const [box, width] = useWidth<HTMLDivElement>();
+  const { box, width } = useWidth<HTMLDivElement>();
   const titleId = useId();
   const layout = useMemo(() => layBeam(record, scale), [record, scale]);
   const only = layout.parts.length === 1 ? layout.parts[0] : null;

@@ -17,7 +17,7 @@ interface Props {
 
 export function ConfirmDialog({ title, action, danger = false, pending, error, onConfirm, onClose, children }: Props) {
   return (
-    <Dialog title={title} isOpen onClose={onClose}>
+    <Dialog title={title} isOpen onClose={onClose} role={danger ? 'alertdialog' : 'dialog'}>
       <div className="space-y-4">
         <div>{children}</div>
         <ErrorPanel error={error} />

@@ -1,36 +1,45 @@
-/** A number with its unit; empty is null. Any notation that JavaScript reads is taken (1e-3), and kept while it is typed. */
+/**
+ * A number with its unit; empty is null. Takes 0.25, 1e-3 or -4 and keeps what is being typed until the field is left, so that a
+ * half-written number is never replaced under the cursor. (The library's own number field knows no powers of ten.)
+ */
 import { useState } from 'react';
-import { FieldError, Input, Label, TextField } from 'react-aria-components';
+import { FieldError, Input, Label, Text, TextField, type TextFieldProps } from 'react-aria-components';
 import { errorLook, inputLook, labelLook } from './field-look.ts';
-import { quantityText } from './number-format.ts';
 
-interface Props {
+interface Props extends Omit<TextFieldProps, 'className' | 'style' | 'children' | 'isInvalid' | 'value' | 'defaultValue' | 'onChange' | 'onBlur' | 'type'> {
   label: string;
   value: number | null;
   onChange: (value: number | null) => void;
   unit?: string | null;
+  description?: React.ReactNode;
   error?: string;
   placeholder?: string;
-  isDisabled?: boolean;
 }
 
-export function NumberField({ label, value, onChange, unit, error, placeholder, isDisabled }: Props) {
+/** The number that a text says: null for an empty one, undefined where it says none. A comma is refused: it could mean either sign. */
+export function readNumber(text: string): number | null | undefined {
+  const bare = text.trim().replace(/^[−–]/, '-');
+  if (bare === '') return null;
+  return /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i.test(bare) && Number.isFinite(Number(bare)) ? Number(bare) : undefined;
+}
+
+export function NumberField({ label, value, onChange, unit, description, error, placeholder, ...props }: Props) {
   const [typed, setTyped] = useState<string | null>(null);
-  const shown = typed ?? (value === null ? '' : quantityText(value, 12));
-  const wrong = typed !== null && typed.trim() !== '' && !Number.isFinite(Number(typed));
-  const complaint = wrong ? 'This is not a number.' : error;
+  const wrong = typed !== null && readNumber(typed) === undefined;
+  const complaint = wrong ? 'Write a number, for example 0.25 or 1e-3.' : error;
   return (
     <TextField
-      value={shown} isDisabled={isDisabled} isInvalid={complaint !== undefined} className="space-y-1"
+      {...props} value={typed ?? (value === null ? '' : String(value))} isInvalid={complaint !== undefined} validationBehavior="aria" className="min-w-0 space-y-1"
       onChange={(text) => {
         setTyped(text);
-        if (text.trim() === '') onChange(null);
-        else if (Number.isFinite(Number(text))) onChange(Number(text));
+        const number = readNumber(text);
+        if (number !== undefined) onChange(number);
       }}
-      onBlur={() => !wrong && setTyped(null)}
+      onBlur={() => { if (!wrong) setTyped(null); }}
     >
-      <Label className={labelLook}>{label}{unit && <span className="font-normal text-ink-soft"> ({unit})</span>}</Label>
-      <Input inputMode="decimal" placeholder={placeholder} className={`${inputLook} text-right tabular-nums`} />
+      <Label className={labelLook}>{label}{unit ? <span className="font-normal text-ink-soft"> in {unit}</span> : null}</Label>
+      <Input inputMode="decimal" autoComplete="off" placeholder={placeholder} className={`${inputLook} text-right tabular-nums`} />
+      {description && <Text slot="description" className="block text-sm text-ink-soft">{description}</Text>}
       <FieldError className={errorLook}>{complaint}</FieldError>
     </TextField>
   );

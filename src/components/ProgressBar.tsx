@@ -15,7 +15,7 @@ interface Props {
 export function ProgressBar({ label, done, total, unit, rate = null, secondsLeft = null }: Props) {
   const known = total > 0;
   const amount = (value: number) => (unit === 'bytes' ? bytesText(value) : quantityText(value));
-  const parts = [known ? `${amount(done)} of ${amount(total)}${unit === 'bytes' ? '' : ` ${unit}`}` : '', rateText(rate, unit), secondsLeft == null ? '' : `${durationText(secondsLeft)} left`].filter(Boolean);
+  const parts = [known ? `${amount(done)} of ${amount(total)}${unit === 'bytes' ? '' : ` ${unit}`}` : '', rateText(rate, unit), secondsLeft === null ? '' : `${durationText(secondsLeft)} left`].filter(Boolean);
   const words = parts.join(', ');
   return (
     <AriaProgressBar value={known ? Math.min(done, total) : 0} maxValue={known ? total : 1} isIndeterminate={!known} valueLabel={words || 'not known yet'} className="my-3 max-w-3xl">

@@ -1,30 +1,25 @@
-/** A line or several lines of text, with its complaint below. */
-import { FieldError, Input, Label, TextArea, TextField as AriaTextField } from 'react-aria-components';
+/** A line or several lines of text; the complaint stands under it and is read with it. */
+import { FieldError, Input, Label, Text, TextArea, TextField as AriaTextField, type TextFieldProps } from 'react-aria-components';
 import { errorLook, inputLook, labelLook } from './field-look.ts';
 
-interface Props {
+interface Props extends Omit<TextFieldProps, 'className' | 'style' | 'children' | 'isInvalid' | 'type'> {
   label: string;
-  value: string;
-  onChange: (value: string) => void;
-  type?: 'text' | 'email' | 'password' | 'search' | 'datetime-local';
+  type?: 'text' | 'email' | 'password' | 'search' | 'url' | 'date' | 'datetime-local';
+  description?: React.ReactNode;
   error?: string;
   multiline?: boolean;
   rows?: number;
   mono?: boolean;
   placeholder?: string;
-  autoFocus?: boolean;
-  autoComplete?: string;
-  isRequired?: boolean;
-  isDisabled?: boolean;
-  name?: string;
 }
 
-export function TextField({ label, error, multiline = false, rows = 3, mono = false, placeholder, type = 'text', ...props }: Props) {
+export function TextField({ label, description, error, multiline = false, rows = 3, mono = false, placeholder, type = 'text', ...props }: Props) {
   const look = `${inputLook} ${mono ? 'font-mono text-sm' : ''}`;
   return (
-    <AriaTextField {...props} type={type} isInvalid={error !== undefined} className="space-y-1">
+    <AriaTextField {...props} type={type as TextFieldProps['type']} isInvalid={error !== undefined} validationBehavior="aria" className="min-w-0 space-y-1">
       <Label className={labelLook}>{label}</Label>
-      {multiline ? <TextArea rows={rows} className={look} placeholder={placeholder} /> : <Input className={look} placeholder={placeholder} />}
+      {multiline ? <TextArea rows={rows} className={`${look} resize-y`} placeholder={placeholder} spellCheck={!mono} /> : <Input className={look} placeholder={placeholder} spellCheck={mono ? false : undefined} />}
+      {description && <Text slot="description" className="block text-sm text-ink-soft">{description}</Text>}
       <FieldError className={errorLook}>{error}</FieldError>
     </AriaTextField>
   );

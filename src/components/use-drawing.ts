@@ -8,7 +8,7 @@ export const paletteNames: (keyof Palette)[] = ['paper', 'paper-raised', 'ink', 
 /** The tokens as they are now, for what is drawn outside style sheets. */
 export function readPalette(): Palette {
   const style = getComputedStyle(document.documentElement);
-  return Object.fromEntries(paletteNames.map((name) => [name, style.getPropertyValue(`--color-${name}`).trim() || '#000000'])) as Palette;
+  return Object.fromEntries(paletteNames.map((name) => [name, style.getPropertyValue(`--${name}`).trim() || '#000000'])) as Palette;
 }
 
 /** Counts up when the theme changes. */
@@ -23,11 +23,11 @@ export function useThemeTurn(): number {
 }
 
 /** Width of an element in CSS pixels, kept up to date. */
-export function useWidth<T extends HTMLElement>(): [React.RefObject<T | null>, number] {
-  const ref = useRef<T>(null);
+export function useWidth<T extends HTMLElement>(): { box: React.RefObject<T | null>; width: number } {
+  const box = useRef<T>(null);
   const [width, setWidth] = useState(0);
   useEffect(() => {
-    const element = ref.current;
+    const element = box.current;
     if (!element) return;
     const measure = () => setWidth(Math.floor(element.clientWidth));
     measure();
@@ -36,7 +36,7 @@ export function useWidth<T extends HTMLElement>(): [React.RefObject<T | null>, n
     watch.observe(element);
     return () => watch.disconnect();
   }, []);
-  return [ref, width];
+  return { box, width };
 }
 
 export type Draw = (context: CanvasRenderingContext2D, width: number, height: number, palette: Palette) => void;

@@ -30,7 +30,7 @@ const draftReaders: CallerName[] = ['steward', 'modeler', ...overseers, ...token
 
 export const mayCall: Record<RouteName, CallerName[]> = {
   getMe: known,
-  listAccounts: ['administrator*', 'steward'],
+  listAccounts: organisation,
   updateAccount: ['administrator*'],
   listInvitations: sessions,
   createInvitation: administrators,
