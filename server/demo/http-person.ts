@@ -71,7 +71,7 @@ export class HttpPerson {
       const job = await this.call(routes.getJob, { params: { job: jobId } });
       if (job.state === 'done') return job;
       if (job.state === 'failed' || job.state === 'cancelled') throw new PennyweightError('internal', `The demo could not be seeded: job ${job.label}: ${job.problem?.detail ?? job.state}`);
-      await new Promise((resolve) => setTimeout(resolve, 150));
+      await new Promise((resolve) => setTimeout(resolve, 200));
     }
     throw new PennyweightError('internal', `The demo could not be seeded: job ${jobId} did not finish in ${seconds} s; is the worker running?`);
   }

@@ -29,7 +29,7 @@ export interface SnapshotPlan {
 }
 
 const blockBytes = 24 * 2 ** 20;
-const windowBytes = 192 * 2 ** 20;
+const windowBytes = 128 * 2 ** 20;
 const pieceBytes = 16 * 2 ** 20;
 
 export function planSnapshots(archive: Archive, reading: Reading, names: string[], indices: ArrayLike<number>, limits: Limits): SnapshotPlan {

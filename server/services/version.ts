@@ -1,17 +1,14 @@
-/** The program's version. */
-import { existsSync, readFileSync } from 'node:fs';
-import { dirname, join } from 'node:path';
-import { fileURLToPath } from 'node:url';
+/** The program's version, from the checkout's package.json: two levels above the sources, three above dist/. */
+import { createRequire } from 'node:module';
 import { PennyweightError } from '#contract/error.ts';
 
-/** From the checkout's package.json, which lies at different heights above the sources and above dist/. */
 function versionOfCheckout(): string {
-  for (let folder = dirname(fileURLToPath(import.meta.url)); ; folder = dirname(folder)) {
-    const file = join(folder, 'package.json');
-    const description = existsSync(file) ? (JSON.parse(readFileSync(file, 'utf8')) as { name?: string; version?: string }) : {};
+  const require = createRequire(import.meta.url);
+  for (const place of ['../../package.json', '../../../package.json']) {
+    const description = require(place) as { name?: string; version?: string };
     if (description.name === 'pennyweight' && description.version) return description.version;
-    if (folder === dirname(folder)) throw new PennyweightError('internal', 'The package.json of Pennyweight is missing.');
   }
+  throw new PennyweightError('internal', 'The package.json of Pennyweight is missing.');
 }
 
 export const version = versionOfCheckout();

@@ -16,9 +16,9 @@ export function wordsOf(path: string): string[] {
 
 const has = (words: string[], vocabulary: RegExp) => words.some((word) => vocabulary.test(word));
 
-const timeWords = /^(t|tt|time|times|tvec|tvector|tspan|tout|tsave|stamps?|timestamps?|timevec|timevector|timesteps?|simtime)$/;
+const timeWords = /^(t|tt|time|times|tvec|tvector|tspan|tout|tsave|stamps?|timestamps?|timevec|timevector|timesteps|simtime)$/;
 const weightWords = /^(w|weights?|wts?|quadrature|quad|vol|vols|volumes?|cellvolumes?|areas?|cellareas?|dv|dvol|da|dx?dy(dz)?|measure|lumped)$/;
-const notTimeWords = /^(dt|delta|steps?size|end|max|min|start|final|initial|0|number|count)$/;
+const notTimeWords = /^(dt|delta|step|interval|stepsize|end|max|min|start|final|initial|0|number|count)$/;
 
 /** 'exact' for a name that says nothing but time, 'part' when time is one of its words. */
 export function namesTime(path: string): 'exact' | 'part' | null {
