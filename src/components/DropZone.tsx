@@ -5,14 +5,14 @@ import { Button } from './Button.tsx';
 interface Props {
   label: string;
   /** what is taken, in one line */
-  description?: React.ReactNode;
+  hint?: React.ReactNode;
   onFiles: (files: File[]) => void;
   multiple?: boolean;
   isDisabled?: boolean;
   action?: string;
 }
 
-export function DropZone({ label, description, onFiles, multiple = true, isDisabled = false, action = 'Choose files' }: Props) {
+export function DropZone({ label, hint, onFiles, multiple = true, isDisabled = false, action = 'Choose files' }: Props) {
   const take = (files: File[]) => {
     if (files.length > 0) onFiles(multiple ? files : files.slice(0, 1));
   };
@@ -23,7 +23,7 @@ export function DropZone({ label, description, onFiles, multiple = true, isDisab
       className="flex flex-col items-center gap-3 border border-dashed border-rule-strong bg-paper-raised px-4 py-10 text-center data-drop-target:border-solid data-drop-target:border-brass data-drop-target:bg-brass-wash"
     >
       <Text slot="label" className="text-lg font-medium">{label}</Text>
-      {description && <span className="max-w-prose text-sm text-pretty text-ink-soft">{description}</span>}
+      {hint && <span className="max-w-prose text-sm text-pretty text-ink-soft">{hint}</span>}
       <FileTrigger allowsMultiple={multiple} onSelect={(list) => take(list ? [...list] : [])}>
         <Button kind="plain" isDisabled={isDisabled}>{action}</Button>
       </FileTrigger>

@@ -1,12 +1,14 @@
-/** A snapshot or mode: a line in one dimension, an image in two, a slice in three; with colour bar, values under the pointer, and time. */
-import { useEffect, useState } from 'react';
+/** A snapshot, mode or mean: a line in one dimension, an image in two, a slice in three; with colour bar and values under the pointer. */
+import { useMemo, useState } from 'react';
 import type { FieldValues } from '#contract/shape.ts';
-import { Button } from '../components/Button.tsx';
 import { quantityText } from '../components/number-format.ts';
+import { Select } from '../components/Select.tsx';
 import { ColourBar } from './ColourBar.tsx';
 import { FieldImage } from './FieldImage.tsx';
+import { FramePlayer } from './FramePlayer.tsx';
 import LineTrace from './LineTrace.tsx';
 import { colourRange, type ColourScale } from './colour-map.ts';
+import { sliceOf } from './field-slice.ts';
 
 interface Props {
   data: FieldValues;
@@ -16,63 +18,42 @@ interface Props {
 }
 
 export default function FieldView({ data, scale, onIndex, isFetching }: Props) {
-  const axes = data.axes.filter((axis) => axis.count > 1 || data.axes.length === 1);
-  const [slice, setSlice] = useState(0);
+  const long = data.axes.map((axis, i) => ({ axis, i })).filter(({ axis }) => axis.count > 1);
+  const [across, setAcross] = useState<number | null>(null);
+  const [layer, setLayer] = useState(0);
+  // Axis that is cut: of more than two, the shortest unless chosen otherwise.
+  const cut = long.length > 2 ? (long.find(({ i }) => i === across) ?? long.reduce((least, each) => (each.axis.count < least.axis.count ? each : least))) : null;
+  const shown = Math.min(layer, (cut?.axis.count ?? 1) - 1);
+  const slice = useMemo(() => sliceOf(data, cut ? { axis: cut.i, index: shown } : null), [data, cut?.i, shown]);
   const range = colourRange(scale, data.min, data.max);
   const thinned = data.stride.some((stride) => stride > 1);
-  const depth = axes.length >= 3 ? axes.slice(0, -2).reduce((n, axis) => n * axis.count, 1) : 1;
-  const plane = axes.length >= 2 ? axes[axes.length - 1]!.count * axes[axes.length - 2]!.count : 0;
-  const shown = Math.min(slice, depth - 1);
   return (
-    <figure className="space-y-3">
+    <figure className="min-w-0 space-y-3" aria-busy={isFetching}>
       <figcaption className="flex flex-wrap justify-between gap-x-6 text-sm">
-        <span className="font-medium">{data.label}{data.time !== null && `, t = ${quantityText(data.time)}`}</span>
-        <span className="text-ink-soft tabular-nums">{data.min !== null && data.max !== null ? `${quantityText(data.min)} to ${quantityText(data.max)}${data.unit ? ` ${data.unit}` : ''}` : 'no finite value'}{thinned && `; drawn from every ${data.stride.join(' x ')} node`}</span>
+        <span className="font-medium">{data.label}{data.time !== null && <span className="font-normal text-ink-soft">, time {quantityText(data.time, 8)}</span>}</span>
+        <span className="text-ink-soft tabular-nums">
+          {data.min !== null && data.max !== null ? `${quantityText(data.min)} to ${quantityText(data.max)}${data.unit ? ` ${data.unit}` : ''}` : 'no finite value'}
+          {thinned && `; drawn from every ${data.stride.join(' x ')} node`}
+        </span>
       </figcaption>
-      {axes.length === 1 ? (
-        <LineTrace label={data.field} unit={data.unit} x={axes[0]!.nodes} xUnit={axes[0]!.unit} y={data.values} xName={axes[0]!.name} />
+      {cut && (
+        <div className="flex flex-wrap items-end gap-4">
+          <Select label="Slice across" value={String(cut.i)} options={long.map(({ axis, i }) => ({ id: String(i), label: axis.name }))} onChange={(id) => { setAcross(Number(id)); setLayer(0); }} />
+          <label className="flex min-h-11 min-w-56 flex-1 items-center gap-3 text-sm">
+            <span className="whitespace-nowrap tabular-nums">{cut.axis.name} {cut.axis.nodes ? `${quantityText(cut.axis.nodes[shown])}${cut.axis.unit ? ` ${cut.axis.unit}` : ''}` : `node ${shown}`}</span>
+            <input aria-label={`Layer along ${cut.axis.name}`} type="range" className="h-6 min-w-0 flex-1 accent-(--brass)" min={0} max={cut.axis.count - 1} value={shown} onChange={(event) => setLayer(Number(event.target.value))} />
+          </label>
+        </div>
+      )}
+      {slice.y === null ? (
+        <LineTrace label={data.field} unit={data.unit} x={slice.x.nodes} xUnit={slice.x.unit} xName={slice.x.name} y={slice.values} />
       ) : (
         <>
-          {depth > 1 && (
-            <label className="flex items-center gap-3 text-sm">
-              Slice {axes.slice(0, -2).map((axis) => axis.name).join(', ')} {shown + 1} of {depth}
-              <input type="range" className="w-64 accent-[var(--brass-deep)]" min={0} max={depth - 1} value={shown} onChange={(event) => setSlice(Number(event.target.value))} />
-            </label>
-          )}
-          <FieldImage label={data.label} unit={data.unit} x={axes[axes.length - 1]!} y={axes[axes.length - 2]!} values={depth > 1 ? data.values.slice(shown * plane, (shown + 1) * plane) : data.values} scale={scale} range={range} />
+          <FieldImage label={data.label} unit={data.unit} x={slice.x} y={slice.y} values={slice.values} scale={scale} range={range} />
           <ColourBar scale={scale} range={range} unit={data.unit} />
         </>
       )}
-      {data.count > 1 && <Player index={data.index} count={data.count} onIndex={onIndex} isFetching={isFetching} />}
+      {data.count > 1 && <FramePlayer index={data.index} count={data.count} onIndex={onIndex} isFetching={isFetching} />}
     </figure>
-  );
-}
-
-/** Slider and play through snapshots or modes; the next one is asked for when the last one has come. */
-function Player({ index, count, onIndex, isFetching }: { index: number; count: number; onIndex: (index: number) => void; isFetching: boolean }) {
-  const [asked, setAsked] = useState(index);
-  const [playing, setPlaying] = useState(false);
-  useEffect(() => setAsked(index), [index]);
-  useEffect(() => {
-    if (!playing || isFetching) return;
-    if (index >= count - 1) {
-      setPlaying(false);
-      return;
-    }
-    const timer = setTimeout(() => onIndex(index + 1), 120);
-    return () => clearTimeout(timer);
-  }, [playing, isFetching, index, count, onIndex]);
-  const go = (to: number) => {
-    setAsked(to);
-    onIndex(to);
-  };
-  return (
-    <div className="flex flex-wrap items-center gap-3">
-      <Button kind="plain" onPress={() => { if (index >= count - 1) go(0); setPlaying(!playing); }}>{playing ? 'Pause' : 'Play'}</Button>
-      <label className="flex min-w-60 flex-1 items-center gap-3 text-sm">
-        <span className="tabular-nums">{asked + 1} of {count}</span>
-        <input aria-label="Which one is shown" type="range" className="flex-1 accent-[var(--brass-deep)]" min={0} max={count - 1} value={asked} onChange={(event) => go(Number(event.target.value))} />
-      </label>
-    </div>
   );
 }

@@ -7,7 +7,8 @@ const piece = 33;
 
 /**
  * Highest d such that the rule integrates every Legendre polynomial P_0..P_d over the record (mapped to [-1, 1]) exactly, within
- * 32 eps (k+1)^2 times the sum of |a_j|: the rounding of P_k at rounded nodes. null when not even constants are exact.
+ * 32 eps (k+1)^2 times the sum of |a_j|, the rounding of P_k at rounded nodes, and more where the stamps lie far from zero compared
+ * with the record's length: their own rounding then moves the nodes. null when not even constants are exact.
  * A rule of local formulas is tested on the first and last pieces of a long record only: on 100,000 stamps the trapezoid's error for
  * parabolas falls below any tolerance.
  */
@@ -25,6 +26,7 @@ function degreeOf(stamps: Float64Array, weights: Float64Array): number | null {
   const middle = (stamps[0] + stamps[m - 1]) / 2, half = (stamps[m - 1] - stamps[0]) / 2;
   const x = Float64Array.from(stamps, (t) => (t - middle) / half);
   const total = weights.reduce((sum, a) => sum + Math.abs(a), 0) / half;
+  const far = 1 + Math.max(Math.abs(stamps[0]), Math.abs(stamps[m - 1])) / half;
   let previous = new Float64Array(m).fill(1), current = x.slice();
   for (let k = 0; k <= highest; k++) {
     // Three-term recurrence, Abramowitz & Stegun 22.7.10
@@ -32,7 +34,7 @@ function degreeOf(stamps: Float64Array, weights: Float64Array): number | null {
     let sum = 0;
     for (let j = 0; j < m; j++) sum += (weights[j] / half) * values[j];
     const exact = k === 0 ? 2 : 0;
-    if (Math.abs(sum - exact) > 32 * Number.EPSILON * (k + 1) ** 2 * Math.max(total, 1)) return k === 0 ? null : k - 1;
+    if (Math.abs(sum - exact) > 32 * Number.EPSILON * (k + 1) ** 2 * Math.max(total, 1) * far) return k === 0 ? null : k - 1;
     if (k > 0) {
       const next = new Float64Array(m);
       for (let j = 0; j < m; j++) next[j] = ((2 * k + 1) * x[j] * current[j] - k * previous[j]) / (k + 1);
