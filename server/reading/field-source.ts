@@ -35,14 +35,18 @@ export interface FieldSource {
   read(time: number, times: number, space: Slab): Uint8Array;
 }
 
-/** No filter packs better than about 1,032 to 1 (zlib technical details, "Maximum compression factor"). */
+/** Deflate packs at most about 1,032 to 1 (zlib technical details, "Maximum compression factor"). */
 const bestPacking = 1100;
 const smallClaim = 2 ** 30;
 
-/** A shape may claim more than the file can hold; reading the rest would take for ever and give nothing but fill values. */
-function refuseEmptyClaims(archive: Archive, path: string, bytes: number): void {
+/**
+ * A shape may claim far more than was written; reading the rest would take for ever and give nothing but fill values.
+ * Filters that pack better than deflate are believed when at least half of the chunks are there.
+ */
+function refuseEmptyClaims(archive: Archive, path: string, elements: number, itemBytes: number, allocated: number | null): void {
   const held = archive.contents.files.reduce((sum, file) => sum + file.bytes, 0);
-  if (bytes <= smallClaim || bytes <= held * bestPacking) return;
+  const bytes = elements * itemBytes;
+  if (bytes <= smallClaim || bytes <= held * bestPacking || (allocated !== null && 2 * allocated >= elements)) return;
   throw new PennyweightError(
     'limit-exceeded',
     `the shape of ${path} claims ${bytes} bytes, and the archive has ${held}: most of it was never written, so it was not read; trim it to what was written.`,
@@ -68,7 +72,7 @@ function arraySource(archive: Archive, field: FieldReading, limits: Limits): Fie
   const itemBytes = elementBytes[info.dtype];
   refuseLargeChunks(field.path, info.chunks, itemBytes, limits.chunkBytes);
   const bytes = sizeOf(info.shape) * itemBytes;
-  refuseEmptyClaims(archive, field.path, bytes);
+  refuseEmptyClaims(archive, field.path, sizeOf(info.shape), itemBytes, info.allocated);
   const axes = fieldAxes(info, field.axes);
   const { timeAxis } = axes;
   const timeless = timeAxis < 0;
@@ -125,8 +129,10 @@ function stepSource(archive: Archive, field: FieldReading, limits: Limits): Fiel
     }
     refuseLargeChunks(path, chunks, itemBytes, limits.chunkBytes);
   }
-  const bytes = sizeOf(info.shape) * itemBytes * steps.length;
-  refuseEmptyClaims(archive, field.path, bytes);
+  const elements = sizeOf(info.shape) * steps.length;
+  const bytes = elements * itemBytes;
+  const allocated = steps.reduce<number | null>((sum, step) => (sum === null || step.info.allocated === null ? null : sum + step.info.allocated), 0);
+  refuseEmptyClaims(archive, field.path, elements, itemBytes, allocated);
   const axes = fieldAxes(info, field.axes);
   return {
     field,
@@ -136,7 +142,7 @@ function stepSource(archive: Archive, field: FieldReading, limits: Limits): Fiel
     axes,
     snapshots: steps.length,
     bytes,
-    allocated: steps.reduce<number | null>((sum, step) => (sum === null || step.info.allocated === null ? null : sum + step.info.allocated), 0),
+    allocated,
     pieceSizes: (budget) => ({ times: 1, space: slabSizes(info.shape, info.chunks, budget) }),
     timeStep: 1,
     timesTogether: false,

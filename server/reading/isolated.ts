@@ -33,7 +33,7 @@ export interface IsolatedArchive {
   apply(reading: Reading): Promise<{ reading: Reading; mismatches: Mismatch[] }>;
   survey(reading: Reading, onProgress?: (doneBytes: number, totalBytes: number) => void): Promise<Survey>;
   /**
-   * Blocks of at most about 32 MiB, or of one snapshot; the next is read while one is used, and no further ahead. With
+   * Blocks of at most 16 MiB, or of one snapshot; the next is read while one is used, and no further ahead. With
    * `reuse` the values of a block are overwritten once the next is asked for: faster for whoever does not keep them.
    */
   snapshots(reading: Reading, fieldNames: string[], indices: ArrayLike<number>, options?: { reuse?: boolean }): AsyncGenerator<SnapshotBlock, void, undefined>;

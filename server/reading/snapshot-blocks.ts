@@ -28,7 +28,8 @@ export interface SnapshotPlan {
   held: number;
 }
 
-const blockBytes = 24 * 2 ** 20;
+/** Smaller than what the C library maps anew for each array (32 MiB): the memory of a block that is done is used again. */
+const blockBytes = 16 * 2 ** 20;
 const windowBytes = 128 * 2 ** 20;
 const pieceBytes = 16 * 2 ** 20;
 

@@ -15,7 +15,7 @@ export function AuditEntryRow({ entry }: { entry: AuditEntry }) {
         {changed && (
           <details>
             <summary className="cursor-pointer text-ink-soft">Before and after</summary>
-            <pre tabIndex={0} aria-label={`Before and after of entry ${entry.seq}`} className="mt-1 max-h-64 overflow-auto bg-sheet p-2 font-mono text-xs">{JSON.stringify({ before: entry.before, after: entry.after }, null, 2)}</pre>
+            <pre tabIndex={0} aria-label={`Before and after of entry ${entry.seq}`} className="mt-1 max-h-64 overflow-auto bg-paper-raised p-2 font-mono text-xs">{JSON.stringify({ before: entry.before, after: entry.after }, null, 2)}</pre>
             <p className="font-mono text-xs break-all text-ink-soft">{entry.hash}</p>
           </details>
         )}

@@ -40,7 +40,7 @@ describe.each([
     for await (const block of archive.snapshots(reading, ['u'], indices)) {
       expect([block.from, block.nodes]).toEqual([next, n]);
       expect(block.values).toHaveLength(block.count * n);
-      expect(block.values.byteLength).toBeLessThanOrEqual(32 * 2 ** 20);
+      expect(block.values.byteLength).toBeLessThanOrEqual(16 * 2 ** 20);
       for (let p = 0; p < block.count; p++) {
         for (let i = 0; i < n; i += 4999) if (block.values[p * n + i] !== value(indices[next + p], i)) expect.unreachable(`snapshot ${indices[next + p]}, node ${i}`);
       }
