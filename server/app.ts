@@ -1,5 +1,6 @@
 /** The Express application, without listening. */
 import { existsSync } from 'node:fs';
+import type { ServerResponse } from 'node:http';
 import { fileURLToPath } from 'node:url';
 import express, { type Express } from 'express';
 import helmet from 'helmet';
@@ -30,6 +31,14 @@ function pagesFolder(): string | null {
 }
 
 /** `pages`: the folder of the built pages; null while there are none (npm run dev serves them itself). */
+/**
+ * Arquero compiles its expressions with `new Function`. It runs in a worker for that, whose script carries a policy of its own: it may
+ * compile, and may reach nothing else. Pages keep the strict one.
+ */
+function workerPolicy(res: ServerResponse, path: string): void {
+  if (/\.worker-[^/]+\.js$/.test(path)) res.setHeader('content-security-policy', "default-src 'none'; script-src 'self' 'unsafe-eval'");
+}
+
 export function createApp(app: App, pages: string | null = pagesFolder()): Express {
   const web = express();
   const auth = createAuth({ ...app, record: (event, person, requestId) => recordSignIn(app, event, person, requestId) });
@@ -58,7 +67,7 @@ export function createApp(app: App, pages: string | null = pagesFolder()): Expre
   for (const router of [accountRouter, campaignRouter, deliveryRouter, archiveRouter, datasetRouter, releaseRouter, operationRouter]) web.use(router(app));
   web.all('/api{/*any}', noSuchRoute);
   if (pages) {
-    web.use('/assets', express.static(`${pages}/assets`, { immutable: true, maxAge: '1y', fallthrough: false }));
+    web.use('/assets', express.static(`${pages}/assets`, { immutable: true, maxAge: '1y', fallthrough: false, setHeaders: workerPolicy }));
     web.use(express.static(pages, { index: false, maxAge: 0 }));
     web.get('/{*spa}', (_req, res) => { res.sendFile(`${pages}/index.html`, { headers: { 'cache-control': 'no-cache' } }); });
   }

@@ -94,7 +94,7 @@ async function gather(app: App, job: JobHandle, plan: RecordState, path: string)
       const archive = await openArchiveFiles(app, plan.sources[source].archive);
       try {
         const indices = plan.columns.slice(from, to).map((column) => column.index);
-        for await (const block of archive.snapshots(plan.sources[source].survey.reading, names, indices)) {
+        for await (const block of archive.snapshots(plan.sources[source].survey.reading, names, indices, { reuse: true })) {
           job.signal.throwIfAborted();
           if (mean && plan.centre !== 'first-snapshot') {
             const into = perRun ? mean.subarray(r * rows, (r + 1) * rows) : mean;

@@ -54,10 +54,9 @@ export function planSnapshots(archive: Archive, reading: Reading, names: string[
   }
   if (columns.length === 0) throw new PennyweightError('invalid-input', 'choose at least one field to read.');
   const { snapshots } = columns[0].source;
-  for (let p = 0; p < indices.length; p++) {
-    if (!Number.isInteger(indices[p]) || indices[p] < 0 || indices[p] >= snapshots) {
-      throw new PennyweightError('range-invalid', `there is no snapshot ${indices[p]}: the record has ${snapshots}, counted from 0.`, { index: indices[p], snapshots });
-    }
+  const outside = Array.from(indices).find((index) => !Number.isInteger(index) || index < 0 || index >= snapshots);
+  if (outside !== undefined) {
+    throw new PennyweightError('range-invalid', `there is no snapshot ${outside}: the record has ${snapshots}, counted from 0.`, { index: outside, snapshots });
   }
   const snapshotBytes = nodes * 8;
   if (snapshotBytes > limits.snapshotBytes) {

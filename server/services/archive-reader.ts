@@ -16,8 +16,8 @@ export interface OpenArchive {
   /** the reading of another archive of the same solver, with this archive's counts, and what does not fit */
   apply(reading: Reading): Promise<{ reading: Reading; mismatches: ReadingMisfit[] }>;
   survey(reading: Reading, onProgress?: (doneBytes: number, totalBytes: number) => void): Promise<Survey>;
-  /** blocks of snapshots: count x nodes values, fields stacked in the order asked */
-  snapshots(reading: Reading, fieldNames: string[], indices: ArrayLike<number>): AsyncGenerator<{ from: number; count: number; nodes: number; values: Float64Array }, void, undefined>;
+  /** blocks of snapshots: count x nodes values, fields stacked in the order asked; with `reuse` a block is gone when the next is asked for */
+  snapshots(reading: Reading, fieldNames: string[], indices: ArrayLike<number>, options?: { reuse?: boolean }): AsyncGenerator<{ from: number; count: number; nodes: number; values: Float64Array }, void, undefined>;
   axes(reading: Reading): Promise<Pick<Survey, 'stamps' | 'stampType' | 'stampPath' | 'axes' | 'spaceWeights' | 'timeWeights'>>;
   close(): Promise<void>;
 }

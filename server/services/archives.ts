@@ -11,6 +11,7 @@ import { recordAudit } from './audit.ts';
 import { campaignBySlug } from './campaign-lookup.ts';
 import { authorise, mustSee, type App, type Caller } from './context.ts';
 import { peopleById } from './people.ts';
+import { parametersOf } from './run-parameters.ts';
 
 export type ArchiveRow = typeof archive.$inferSelect;
 export interface FoundArchive {
@@ -86,7 +87,7 @@ export async function getArchive(app: App, caller: Caller, id: string): Promise<
   const files = await app.db.select().from(archiveFile).where(eq(archiveFile.archiveId, id)).orderBy(archiveFile.position);
   const mayReadDrafts = caller.ability.can('read', about('Draft', { campaignId: found.row.campaignId }));
   return {
-    ...summary, files: files.map(({ name, bytes, sha256 }) => ({ name, bytes, sha256 })), parameters: found.run.parameters, note: found.row.note, jobId: found.row.jobId,
+    ...summary, files: files.map(({ name, bytes, sha256 }) => ({ name, bytes, sha256 })), parameters: parametersOf(found.run.parameters, found.row.reading), note: found.row.note, jobId: found.row.jobId,
     readingSource: found.row.readingSource, usedIn: mayReadDrafts ? await usesOf(app.db, id) : [], withdrawnReason: found.row.withdrawnReason,
   };
 }

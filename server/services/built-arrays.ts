@@ -1,10 +1,10 @@
 /** The small arrays and texts of a build or release, read whole. */
-import { readFile } from 'node:fs/promises';
 import { join } from 'node:path';
+import { readWhole } from '../storage/array-file.ts';
 
 /** Data of an NPY 1.0 of our own making, after its header. */
 async function npyData(folder: string, name: string): Promise<ArrayBuffer> {
-  const file = await readFile(join(folder, name)), start = 10 + file.readUInt16LE(8);
+  const file = await readWhole(join(folder, name)), start = 10 + file.readUInt16LE(8);
   return file.buffer.slice(file.byteOffset + start, file.byteOffset + file.length) as ArrayBuffer;
 }
 
@@ -28,5 +28,5 @@ export interface BuiltFields {
 }
 
 export async function builtFields(folder: string): Promise<BuiltFields> {
-  return JSON.parse(await readFile(join(folder, 'fields.json'), 'utf8')) as BuiltFields;
+  return JSON.parse((await readWhole(join(folder, 'fields.json'))).toString('utf8')) as BuiltFields;
 }

@@ -1,9 +1,9 @@
 /** The matrix on disk: NPY, Fortran order, so that a column (one snapshot) is contiguous. Written once, front to back; read by columns or tiles of rows. */
 import { createHash, type Hash } from 'node:crypto';
-import { open, type FileHandle } from 'node:fs/promises';
 import { PennyweightError } from '#contract/error.ts';
 import { bytesOf, npyHeader } from '../engine/release/npy.ts';
 import type { RowTile, RowTileSource } from '../engine/spectrum/spectrum.ts';
+import { ArrayFile } from '../storage/array-file.ts';
 
 export interface MatrixShape {
   rows: number;
@@ -13,30 +13,21 @@ export interface MatrixShape {
 
 const tileBytes = 32 * 2 ** 20;
 
-async function readFully(handle: FileHandle, into: Uint8Array, position: number): Promise<void> {
-  for (let done = 0; done < into.length; ) {
-    const { bytesRead } = await handle.read(into, done, into.length - done, position + done);
-    if (bytesRead === 0) throw new PennyweightError('internal', 'The stored matrix is shorter than its header says: restore it from the backup.', { position: position + done });
-    done += bytesRead;
-  }
-}
-
 export class MatrixWriter {
-  private readonly handle: FileHandle;
+  private readonly file: ArrayFile;
   private readonly shape: MatrixShape;
   private readonly hash: Hash = createHash('sha256');
-  private written = 0;
   private appended = 0;
   /** largest |x - float32(x)| met */
   castError = 0;
 
-  private constructor(handle: FileHandle, shape: MatrixShape) {
-    this.handle = handle;
+  private constructor(file: ArrayFile, shape: MatrixShape) {
+    this.file = file;
     this.shape = shape;
   }
 
   static async create(path: string, shape: MatrixShape): Promise<MatrixWriter> {
-    const writer = new MatrixWriter(await open(path, 'wx'), shape);
+    const writer = new MatrixWriter(await ArrayFile.create(path), shape);
     await writer.put(npyHeader(shape.type, [shape.rows, shape.columns], true));
     return writer;
   }
@@ -59,35 +50,34 @@ export class MatrixWriter {
   }
 
   async close(): Promise<{ sha256: string; bytes: number }> {
-    await this.handle.sync();
-    await this.handle.close();
-    return { sha256: this.hash.digest('hex'), bytes: this.written };
+    await this.file.sync();
+    await this.file.close();
+    return { sha256: this.hash.digest('hex'), bytes: this.file.length };
   }
 
-  async abandon(): Promise<void> {
-    await this.handle.close();
+  abandon(): Promise<void> {
+    return this.file.close();
   }
 
   private async put(bytes: Uint8Array): Promise<void> {
     this.hash.update(bytes);
-    for (let done = 0; done < bytes.length; ) done += (await this.handle.write(bytes, done, bytes.length - done)).bytesWritten;
-    this.written += bytes.length;
+    await this.file.append(bytes);
   }
 }
 
 export class MatrixReader implements RowTileSource {
   readonly shape: MatrixShape;
-  private readonly handle: FileHandle;
+  private readonly file: ArrayFile;
   private readonly start: number;
 
-  private constructor(handle: FileHandle, shape: MatrixShape) {
-    this.handle = handle;
+  private constructor(file: ArrayFile, shape: MatrixShape) {
+    this.file = file;
     this.shape = shape;
     this.start = npyHeader(shape.type, [shape.rows, shape.columns], true).length;
   }
 
   static async open(path: string, shape: MatrixShape): Promise<MatrixReader> {
-    return new MatrixReader(await open(path, 'r'), shape);
+    return new MatrixReader(await ArrayFile.open(path), shape);
   }
 
   get snapshots(): number {
@@ -102,8 +92,8 @@ export class MatrixReader implements RowTileSource {
   async bytes(first: number, columns: number, from: number, count: number): Promise<Uint8Array> {
     const { rows, type } = this.shape, size = bytesOf[type];
     const raw = new Uint8Array(columns * count * size);
-    if (count === rows) await readFully(this.handle, raw, this.start + first * rows * size);
-    else for (let j = 0; j < columns; j++) await readFully(this.handle, raw.subarray(j * count * size, (j + 1) * count * size), this.start + ((first + j) * rows + from) * size);
+    if (count === rows) await this.file.read(raw, this.start + first * rows * size);
+    else for (let j = 0; j < columns; j++) await this.file.read(raw.subarray(j * count * size, (j + 1) * count * size), this.start + ((first + j) * rows + from) * size);
     return raw;
   }
 
@@ -131,26 +121,35 @@ export class MatrixReader implements RowTileSource {
     }
   }
 
-  async close(): Promise<void> {
-    await this.handle.close();
+  close(): Promise<void> {
+    return this.file.close();
   }
 }
 
 /** Writes a Fortran-ordered NPY in double precision whose rows come tile by tile: `values` of a tile column after column. */
 export async function writeTiles(path: string, rows: number, columns: number, tiles: AsyncIterable<RowTile>): Promise<void> {
-  const handle = await open(path, 'wx');
+  const file = await ArrayFile.create(path), header = npyHeader('float64', [rows, columns], true);
   try {
-    const header = npyHeader('float64', [rows, columns], true);
-    await handle.write(header, 0, header.length, 0);
+    await file.append(header);
     for await (const tile of tiles) {
       for (let k = 0; k < columns; k++) {
-        const part = tile.values.subarray(k * tile.rows, (k + 1) * tile.rows), position = header.length + 8 * (k * rows + tile.from);
-        const bytes = new Uint8Array(part.buffer, part.byteOffset, part.byteLength);
-        for (let done = 0; done < bytes.length; ) done += (await handle.write(bytes, done, bytes.length - done, position + done)).bytesWritten;
+        const part = tile.values.subarray(k * tile.rows, (k + 1) * tile.rows);
+        await file.write(new Uint8Array(part.buffer, part.byteOffset, part.byteLength), header.length + 8 * (k * rows + tile.from));
       }
     }
-    await handle.sync();
+    await file.sync();
   } finally {
-    await handle.close();
+    await file.close();
+  }
+}
+
+/** `count` doubles of column `column` from row `from` of such a file. */
+export async function readDoubles(path: string, rows: number, column: number, from: number, count: number, start: number): Promise<Float64Array> {
+  const file = await ArrayFile.open(path), values = new Float64Array(count);
+  try {
+    await file.read(new Uint8Array(values.buffer), start + 8 * (column * rows + from));
+    return values;
+  } finally {
+    await file.close();
   }
 }

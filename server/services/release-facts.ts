@@ -1,5 +1,5 @@
 /** Gathers what the texts of a release speak of. */
-import { asc, eq, inArray } from 'drizzle-orm';
+import { asc, eq, inArray, or } from 'drizzle-orm';
 import { PennyweightError } from '#contract/error.ts';
 import type { ReleaseFacts } from '../engine/release/facts.ts';
 import { archive, archiveFile, campaign, dataset, finding, run } from '../db/schema/index.ts';
@@ -16,7 +16,7 @@ export async function releaseFacts(app: App, row: DraftRow, version: number): Pr
   const ids = archivesOf(row.recipe);
   const archives = await app.db.select({ archive, run: run.name }).from(archive).innerJoin(run, eq(run.id, archive.runId)).where(inArray(archive.id, ids));
   const files = await app.db.select().from(archiveFile).where(inArray(archiveFile.archiveId, ids)).orderBy(asc(archiveFile.position));
-  const waived = (await app.db.select().from(finding).where(inArray(finding.archiveId, ids)).orderBy(asc(finding.position))).filter((each) => each.waivedAt !== null);
+  const waived = (await app.db.select().from(finding).where(or(eq(finding.draftId, row.id), inArray(finding.archiveId, ids))).orderBy(asc(finding.position))).filter((each) => each.waivedAt !== null);
   const person = await peopleById(app.db, [row.createdBy, row.reviewedBy, ...archives.map((each) => each.archive.createdBy), ...waived.map((each) => each.waivedBy)]);
   return {
     campaign: { slug: parent.campaign.slug, title: parent.campaign.title }, dataset: { slug: parent.dataset.slug, title: parent.dataset.title, description: parent.dataset.description },
@@ -27,6 +27,6 @@ export async function releaseFacts(app: App, row: DraftRow, version: number): Pr
       return { archive: id, run: found.run, name: found.archive.name, files: files.filter((file) => file.archiveId === id).map(({ name, sha256, bytes }) => ({ name, sha256, bytes })), handedInBy: person(found.archive.createdBy), handedInAt: found.archive.createdAt.toISOString() };
     }),
     waivers: waived.map((each) => ({ check: each.checkId, message: each.message, reason: each.waivedReason!, by: person(each.waivedBy!), at: each.waivedAt!.toISOString() })),
-    url: app.config.url, program,
+    program,
   };
 }

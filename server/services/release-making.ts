@@ -29,12 +29,22 @@ export interface MadeRelease {
   jobId: string;
 }
 
-/** Release row, draft released, the release before superseded, audit row. A second run for the same draft does nothing. */
+/** Release row, draft released, the release before superseded, audit row. A bag that becomes no release goes again. */
 export async function finishRelease(app: App, caller: Caller, draftId: string, made: MadeRelease): Promise<void> {
+  try {
+    await recordRelease(app, caller, draftId, made);
+  } catch (cause) {
+    // A refusal comes before the commit. After a lost connection nobody knows, and the next worker clears what no release names.
+    if (cause instanceof PennyweightError) await app.storage.removeFolder('releases', made.folder);
+    throw cause;
+  }
+}
+
+async function recordRelease(app: App, caller: Caller, draftId: string, made: MadeRelease): Promise<void> {
   await app.db.transaction(async (tx) => {
     await mustStillRun(tx, made.jobId);
     const [row] = await tx.select().from(draft).where(eq(draft.id, draftId)).for('update');
-    if (row.state !== 'approved') return;
+    if (row.state !== 'approved') throw new PennyweightError('wrong-state', `The draft is ${row.state} by now: no release is made.`, { state: row.state });
     const [parent] = await tx.select().from(dataset).where(eq(dataset.id, row.datasetId)).for('update');
     const { approval, build } = row;
     const manifestSha256 = made.files.find((file) => file.path === 'manifest-sha256.txt')!.sha256;

@@ -1,19 +1,15 @@
 /** Providers around the routes. */
-import { QueryClient, QueryClientProvider } from '@tanstack/react-query';
+import { useEffect } from 'react';
+import { QueryClientProvider } from '@tanstack/react-query';
 import { RouterProvider } from 'react-router-dom';
-import { ApiProblem } from '../api/api-problem.ts';
+import { watchForms } from './first-problem.ts';
+import { queryClient } from './query-client.ts';
 import { router } from './router.tsx';
 
-/** A refusal stays a refusal: only lost connections and failing servers are asked again. */
-const queries = new QueryClient({
-  defaultOptions: {
-    queries: { staleTime: 5_000, retry: (failures, error) => failures < 2 && (!(error instanceof ApiProblem) || error.problem.status === 0 || error.problem.status >= 500) },
-  },
-});
-
 export function App() {
+  useEffect(() => watchForms(document), []);
   return (
-    <QueryClientProvider client={queries}>
+    <QueryClientProvider client={queryClient}>
       <RouterProvider router={router} />
     </QueryClientProvider>
   );

@@ -1,26 +1,20 @@
-/** Light, dark, or as the system has it; kept in this browser. */
-import { useEffect, useState } from 'react';
+/** Light, dark, or as the system has it: one press goes on to the next. */
 import { Button } from '../components/Button.tsx';
+import { nextTheme, useThemeChoice, type ThemeChoice } from './theme-choice.ts';
 
-type Choice = 'system' | 'light' | 'dark';
-const key = 'pennyweight-theme';
-const next: Record<Choice, Choice> = { system: 'light', light: 'dark', dark: 'system' };
+const words: Record<ThemeChoice, string> = { system: 'as the system', light: 'light', dark: 'dark' };
 
-function stored(): Choice {
-  const value = localStorage.getItem(key);
-  return value === 'light' || value === 'dark' ? value : 'system';
-}
+const signs: Record<ThemeChoice, React.ReactNode> = {
+  system: <><circle cx="8" cy="8" r="5.500" fill="none" stroke="currentColor" strokeWidth="1.500" /><path d="M8 2.500a5.500 5.500 0 010 11z" fill="currentColor" /></>,
+  light: <><circle cx="8" cy="8" r="3" fill="none" stroke="currentColor" strokeWidth="1.500" /><path d="M8 .8v2M8 13.200v2M.8 8h2M13.200 8h2M2.900 2.900l1.400 1.400M11.700 11.700l1.400 1.400M2.900 13.100l1.400-1.400M11.700 4.300l1.400-1.400" stroke="currentColor" strokeWidth="1.500" /></>,
+  dark: <path d="M13.500 9.800A6 6 0 016.200 2.500a6 6 0 107.300 7.300z" fill="none" stroke="currentColor" strokeWidth="1.500" strokeLinejoin="round" />,
+};
 
 export function ThemeSwitch() {
-  const [choice, setChoice] = useState<Choice>(stored);
-  useEffect(() => {
-    const system = matchMedia('(prefers-color-scheme: dark)');
-    const apply = () => { document.documentElement.dataset.theme = choice === 'dark' || (choice === 'system' && system.matches) ? 'dark' : 'light'; };
-    if (choice === 'system') localStorage.removeItem(key);
-    else localStorage.setItem(key, choice);
-    apply();
-    system.addEventListener('change', apply);
-    return () => system.removeEventListener('change', apply);
-  }, [choice]);
-  return <Button kind="quiet" aria-label={`Theme: ${choice}. Change it to ${next[choice]}`} onPress={() => setChoice(next[choice])}>{choice === 'system' ? 'Auto' : choice === 'light' ? 'Light' : 'Dark'}</Button>;
+  const [choice, choose] = useThemeChoice();
+  return (
+    <Button kind="quiet" aria-label={`Theme: ${words[choice]}. Change it to ${words[nextTheme(choice)]}`} onPress={() => choose(nextTheme(choice))}>
+      <svg aria-hidden viewBox="0 0 16 16" className="mx-2 size-4">{signs[choice]}</svg>
+    </Button>
+  );
 }

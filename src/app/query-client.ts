@@ -2,11 +2,9 @@
 import { QueryClient } from '@tanstack/react-query';
 import { ApiProblem } from '../api/api-problem.ts';
 
-/** A refusal stays a refusal; only a server that cannot be reached or is overloaded is asked again. */
+/** A refusal stays a refusal: only lost connections and failing servers are asked again. */
 export function asksAgain(failures: number, error: Error): boolean {
-  return failures < 2 && error instanceof ApiProblem && (error.problem.status === 0 || error.problem.status === 503);
+  return failures < 2 && (!(error instanceof ApiProblem) || error.problem.status === 0 || error.problem.status >= 500);
 }
 
-export function makeQueryClient(): QueryClient {
-  return new QueryClient({ defaultOptions: { queries: { staleTime: 5_000, retry: asksAgain }, mutations: { retry: false } } });
-}
+export const queryClient = new QueryClient({ defaultOptions: { queries: { staleTime: 5_000, retry: asksAgain } } });

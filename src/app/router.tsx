@@ -10,6 +10,7 @@ export const router = createBrowserRouter([
   {
     element: <Layout />,
     errorElement: <ErrorPage />,
+    hydrateFallbackElement: <></>,
     children: [
       { errorElement: <ErrorPage />, children: [...openRoutes, { element: <SessionGate />, children: [...pageRoutes, { path: '*', element: <NotFoundPage /> }] }] },
     ],

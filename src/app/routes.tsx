@@ -15,6 +15,8 @@ export const openRoutes: RouteObject[] = [
   page('/reset', 'ResetPage', () => import('../features/account/ResetPage.tsx')),
   page('/join/:secret', 'JoinPage', () => import('../features/account/JoinPage.tsx')),
   page('/demo-inbox', 'DemoInboxPage', () => import('../features/account/DemoInboxPage.tsx')),
+  // Every component at once, to look at while developing; the build leaves it out.
+  ...(import.meta.env.DEV ? [page('/specimen', 'Specimen', () => import('./Specimen.tsx'))] : []),
 ];
 
 export const pageRoutes: RouteObject[] = [

@@ -47,15 +47,18 @@ export function DataTable<T>({ caption, columns, rows, rowId, fileName, stateKey
     () => columns.map((column) => ({
       id: column.id,
       accessorFn: column.value,
-      sortUndefined: 'last',
       sortingFn: (a, b) => compare(column.value(a.original), column.value(b.original)),
-      filterFn: undefined,
     })),
     [columns],
   );
+  const { find, sort } = state;
+  const [sortId, desc] = [sort?.id, sort?.desc ?? false];
+  const sorting = useMemo(() => (sortId !== undefined && columns.some((column) => column.id === sortId) ? [{ id: sortId, desc }] : []), [sortId, desc, columns]);
   const table = useReactTable({
     data: rows, columns: definitions, getRowId: rowId,
-    state: { sorting: state.sort && columns.some((column) => column.id === state.sort!.id) ? [state.sort] : [], globalFilter: state.find },
+    state: { sorting, globalFilter: find },
+    // There are no pages; resetting them after each new order would draw for ever.
+    autoResetAll: false,
     getCoreRowModel: getCoreRowModel(), getSortedRowModel: getSortedRowModel(), getFilteredRowModel: getFilteredRowModel(),
     getColumnCanGlobalFilter: () => true,
     globalFilterFn: (row, id, words: string) => shown(columns.find((column) => column.id === id)!, row.original).toLowerCase().includes(words.trim().toLowerCase()),
@@ -71,7 +74,7 @@ export function DataTable<T>({ caption, columns, rows, rowId, fileName, stateKey
   return (
     <section aria-label={caption} className="min-w-0 space-y-3">
       <div data-no-print className="flex flex-wrap items-end justify-between gap-x-6 gap-y-2">
-        <div className="w-full max-w-xs"><TextField label="Find in this table" type="search" value={state.find} onChange={(find) => setState({ find })} /></div>
+        <div className="w-full max-w-xs"><TextField label="Find in this table" type="search" value={find} onChange={(find) => setState({ find })} /></div>
         <div className="flex items-center gap-4 text-sm text-ink-soft">
           <span role="status" className="tabular-nums">{view.length === rows.length ? `${rows.length} rows` : `${view.length} of ${rows.length} rows`}</span>
           <Button kind="quiet" onPress={exportRows}>Export CSV</Button>
@@ -83,7 +86,7 @@ export function DataTable<T>({ caption, columns, rows, rowId, fileName, stateKey
           <thead>
             <tr aria-rowindex={1}>
               {columns.map((column) => (
-                <SortHeader key={column.id} label={column.header} numeric={column.numeric} direction={state.sort?.id === column.id ? (state.sort.desc ? 'descending' : 'ascending') : null}
+                <SortHeader key={column.id} label={column.header} numeric={column.numeric} direction={sortId === column.id ? (desc ? 'descending' : 'ascending') : null}
                   onSort={(direction) => setState({ sort: direction === null ? null : { id: column.id, desc: direction === 'descending' } })} />
               ))}
             </tr>

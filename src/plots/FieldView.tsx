@@ -24,7 +24,8 @@ export default function FieldView({ data, scale, onIndex, isFetching }: Props) {
   // Axis that is cut: of more than two, the shortest unless chosen otherwise.
   const cut = long.length > 2 ? (long.find(({ i }) => i === across) ?? long.reduce((least, each) => (each.axis.count < least.axis.count ? each : least))) : null;
   const shown = Math.min(layer, (cut?.axis.count ?? 1) - 1);
-  const slice = useMemo(() => sliceOf(data, cut ? { axis: cut.i, index: shown } : null), [data, cut?.i, shown]);
+  const held = cut?.i ?? null;
+  const slice = useMemo(() => sliceOf(data, held === null ? null : { axis: held, index: shown }), [data, held, shown]);
   const range = colourRange(scale, data.min, data.max);
   const thinned = data.stride.some((stride) => stride > 1);
   return (

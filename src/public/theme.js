@@ -1,11 +1,12 @@
+/* global window, document */
 // Sets the chosen theme before the first paint; a file of its own since the content security policy allows no inline script.
 (function () {
   var chosen = null;
   try {
-    chosen = localStorage.getItem('pennyweight-theme');
-  } catch (error) {
-    // storage switched off: the system decides
+    chosen = window.localStorage.getItem('pennyweight-theme');
+  } catch {
+    chosen = null; // storage switched off: the system decides
   }
-  var dark = chosen === 'dark' || (chosen !== 'light' && matchMedia('(prefers-color-scheme: dark)').matches);
+  var dark = chosen === 'dark' || (chosen !== 'light' && window.matchMedia('(prefers-color-scheme: dark)').matches);
   document.documentElement.dataset.theme = dark ? 'dark' : 'light';
 })();

@@ -3,7 +3,7 @@ import { createHash } from 'node:crypto';
 import { readFile, readdir } from 'node:fs/promises';
 import { join } from 'node:path';
 import { eq } from 'drizzle-orm';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { PennyweightError } from '#contract/error.ts';
 import { routes } from '#contract/routes.ts';
 import { auditLog, draft as draftTable, job as jobTable } from '../../server/db/schema/index.ts';
@@ -14,6 +14,8 @@ import { removeOrphanedFolders } from '../../server/services/orphaned-folders.ts
 import type { App } from '../../server/services/context.ts';
 import { makeWakeCampaign, type WakeCampaign } from '../setup/wake-campaign.ts';
 
+vi.setConfig({ testTimeout: 90_000 });
+
 let wake: WakeCampaign;
 let adaptive: string, steady: string, elsewhere: string;
 
@@ -21,7 +23,7 @@ beforeAll(async () => {
   wake = await makeWakeCampaign(['adaptive', 'steady', 'elsewhere']);
   [adaptive, steady] = await Promise.all([wake.handIn('adaptive'), wake.handIn('steady')]);
   elsewhere = await wake.handIn('elsewhere');
-}, 60_000);
+}, 120_000);
 afterAll(() => wake.close());
 
 const preview = (recipe: unknown) => wake.modeler.call(routes.previewRecipe, { params: { campaign: wake.campaign }, body: { recipe } });

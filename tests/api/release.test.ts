@@ -1,7 +1,7 @@
 /** The bag of a release: against NumPy and SciPy, sha256sum and h5py; superseding, repeating, a killed worker. */
 import { execFile, spawn, type ChildProcess } from 'node:child_process';
 import { once } from 'node:events';
-import { readFile, readdir } from 'node:fs/promises';
+import { readFile, readdir, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { promisify } from 'node:util';
 import { eq } from 'drizzle-orm';
@@ -14,7 +14,6 @@ import type { JobHandler } from '../../server/jobs/handle.ts';
 import { release as makeRelease } from '../../server/jobs/release.ts';
 import { callerOfJob } from '../../server/services/job-runs.ts';
 import { approval, makeWakeCampaign, type WakeCampaign } from '../setup/wake-campaign.ts';
-import { startWorker } from '../setup/worker.ts';
 
 const run = promisify(execFile);
 vi.setConfig({ testTimeout: 90_000 });
@@ -148,7 +147,7 @@ describe('the release job', () => {
   it('that dies between publishing the bag and its transaction is repeated, and makes one release', async () => {
     const { id } = await wake.built(wake.recipe([steady], { window: { every: 2 } }));
     await wake.modeler.call(routes.submitDraft, { params: { draft: id }, body: {} });
-    await wake.worker.stop();
+    await wake.stopWorker();
     await wake.warden.call(routes.approveDraft, { params: { draft: id }, body: approval });
     const { storage } = parts();
     const dying = { ...parts(), storage: { ...storage, async publish(...given: Parameters<typeof storage.publish>) {
@@ -161,18 +160,18 @@ describe('the release job', () => {
     await byHand(id, makeRelease);
     expect((await wake.modeler.call(routes.getDataset, { params: wake })).releases).toHaveLength(before + 1);
     await run('sha256sum', ['-c', '--strict', 'manifest-sha256.txt'], { cwd: await bagOf(id) });
-    wake.worker = startWorker(wake.app);
+    wake.resumeWorker();
   });
 
   it('refuses a matrix that is not the one that was approved', async () => {
     const { id, build } = await wake.built(wake.recipe([steady], { window: { every: 3 } }));
     await wake.modeler.call(routes.submitDraft, { params: { draft: id }, body: {} });
-    await wake.worker.stop();
+    await wake.stopWorker();
     await wake.warden.call(routes.approveDraft, { params: { draft: id }, body: approval });
     await parts().db.update(draftTable).set({ build: { ...build!, matrixSha256: 'f'.repeat(64) } }).where(eq(draftTable.id, id));
     await expect(byHand(id, makeRelease)).rejects.toMatchObject({ code: 'checksum-mismatch' });
     expect(await parts().db.select().from(releaseTable).where(eq(releaseTable.draftId, id))).toEqual([]);
-    wake.worker = startWorker(wake.app);
+    wake.resumeWorker();
   });
 });
 
@@ -191,11 +190,15 @@ describe('a worker that is killed in mid-build', () => {
   it('leaves nothing to be seen, and the next worker makes the same matrix', async () => {
     const recipe = wake.recipe([wide], {}, ['u']);
     const whole = await wake.built(recipe);
-    await wake.worker.stop();
+    await wake.stopWorker();
     const { id } = await wake.draft(recipe);
     const { jobId } = await wake.modeler.call(routes.buildDraft, { params: { draft: id } });
     const first = startProcess();
-    while ((await scratch()).length === 0) await new Promise((resolve) => setTimeout(resolve, 10));
+    const raw = async () => {
+      const [folder] = await scratch();
+      return folder ? stat(join(parts().config.storage, 'scratch', folder, 'raw.npy')).then((file) => file.size, () => 0) : 0;
+    };
+    while ((await raw()) < 2 ** 20) await new Promise((resolve) => setTimeout(resolve, 5));
     first.kill('SIGKILL');
     await once(first, 'exit');
     const builds = await parts().storage.folders('builds');
@@ -208,6 +211,6 @@ describe('a worker that is killed in mid-build', () => {
     expect(await scratch()).toEqual([]);
     second.kill('SIGTERM');
     await once(second, 'exit');
-    wake.worker = startWorker(wake.app);
+    wake.resumeWorker();
   });
 });

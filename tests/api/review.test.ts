@@ -1,11 +1,13 @@
 /** Submission, return, waivers and approval; four eyes by the service and by the database. */
 import { and, eq } from 'drizzle-orm';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import type { Draft } from '#contract/dataset.ts';
 import { routes } from '#contract/routes.ts';
 import { auditLog, draft as draftTable, job as jobTable } from '../../server/db/schema/index.ts';
 import type { Person } from '../setup/app.ts';
 import { approval, makeWakeCampaign, type WakeCampaign } from '../setup/wake-campaign.ts';
+
+vi.setConfig({ testTimeout: 90_000 });
 
 let wake: WakeCampaign;
 let steady: string, gap: string, blemished: string;
@@ -15,7 +17,7 @@ beforeAll(async () => {
   wake = await makeWakeCampaign(['steady', 'gap', 'blemished']);
   [steady, gap, blemished] = await Promise.all([wake.handIn('steady'), wake.handIn('gap'), wake.handIn('blemished')]);
   sound = await wake.built(wake.recipe([steady]));
-}, 90_000);
+}, 120_000);
 afterAll(() => wake.close());
 
 const submit = (id: string, by: Person = wake.modeler, note = '') => by.call(routes.submitDraft, { params: { draft: id }, body: { note } });
@@ -164,7 +166,7 @@ describe('an approval whose release could not be made', () => {
   it('is given again', async () => {
     const { id } = await wake.built(wake.recipe([steady], { window: { first: 20 } }));
     await submit(id);
-    await wake.worker.stop();
+    await wake.stopWorker();
     const { jobId } = await approve(id, wake.warden);
     await expect(approve(id, wake.warden)).rejects.toMatchObject({ code: 'wrong-state' });
     await db().update(jobTable).set({ state: 'failed' }).where(eq(jobTable.id, jobId!));

@@ -21,7 +21,9 @@ type Steps = Recipe['steps'];
 
 export interface WakeCampaign {
   app: TestApp;
-  worker: TestWorker;
+  /** Jobs wait until the worker goes on. */
+  stopWorker(): Promise<void>;
+  resumeWorker(): void;
   campaign: string;
   dataset: string;
   contributor: Person;
@@ -53,17 +55,24 @@ export async function makeWakeCampaign(records: WakeRecord[]): Promise<WakeCampa
   const modeler = await app.makePerson({ [campaign]: ['modeler'] }, 'Ada Modeler');
   const keeper = await app.makePerson({ [campaign]: ['steward'] }, 'Grace Steward');
   const warden = await app.makePerson({ [campaign]: ['steward'] }, 'Emmy Steward');
-  const worker = startWorker(app);
+  let worker: TestWorker | null = startWorker(app);
   const dataset = unique('wake');
   await modeler.call(routes.createDataset, { params: { campaign }, body: { slug: dataset, title: 'Wake', description: 'An invented wake.' } });
 
   const wake: WakeCampaign = {
-    app, worker, campaign, dataset, contributor, modeler, keeper, warden, records: folder,
+    app, campaign, dataset, contributor, modeler, keeper, warden, records: folder,
+    async stopWorker() {
+      await worker?.stop();
+      worker = null;
+    },
+    resumeWorker() {
+      worker ??= startWorker(app);
+    },
     fileOf: (record) => join(folder, `${record}.h5`),
     async handIn(record, by = contributor) {
       const person = new HttpPerson(app.url), file = wake.fileOf(record);
       await person.signIn(by.email, by.password);
-      const parameters = record === 'wide' ? { re: 1 } : {};
+      const parameters: Record<string, number> = record === 'wide' ? { re: 1 } : {};
       const delivery = await person.call(routes.createDelivery, { params: { campaign }, body: { run: unique(record), solver: 'wake', parameters, files: [{ name: `${record}.h5`, bytes: statSync(file).size }] } });
       await person.sendFiles(delivery, () => file);
       const { archive } = await person.call(routes.getDelivery, { params: { delivery: delivery.id } });
@@ -102,7 +111,7 @@ export async function makeWakeCampaign(records: WakeRecord[]): Promise<WakeCampa
       return { draft: id, version: releaseVersion! };
     },
     async close() {
-      await worker.stop();
+      await wake.stopWorker();
       await app.close();
       await rm(folder, { recursive: true, force: true });
     },

@@ -5,7 +5,7 @@ steady    odd number of snapshots, uneven steps within 2:1, so that Simpson's ru
 gap       even steps but for one wide gap
 blemished even steps, a NaN in snapshot 7
 elsewhere another grid
-wide      20000 nodes, 400 snapshots: long enough to be interrupted
+wide      20000 nodes, 200 snapshots: long enough to be interrupted
 """
 import sys
 from os.path import join
@@ -64,7 +64,7 @@ def elsewhere():
 
 
 def wide():
-    t, s = 0.1 * np.arange(400)[:, None], np.linspace(0, 1, 20000)
+    t, s = 0.1 * np.arange(200)[:, None], np.linspace(0, 1, 20000)
     with h5py.File(join(sys.argv[1], "wide.h5"), "w") as file:
         for path, values, unit in (("time", t[:, 0], "s"), ("x", s, "m"), ("u", sum(np.cos(k * (s[None, :] + 0.1 * t)) / k for k in range(1, 30)), "m/s")):
             file[path] = values

@@ -2,7 +2,7 @@
 import { PennyweightError } from '#contract/error.ts';
 import { recipe as recipeSchema, recipeVersion, type Recipe } from '#contract/recipe.ts';
 import { steps } from './index.ts';
-import { counted, recordRanges, type RecipeSource, type RecordState } from './record-state.ts';
+import type { RecipeSource, RecordState } from './record-state.ts';
 import { applyWeights } from './weigh.ts';
 
 /** Reads a recipe from outside. Errors: 'recipe-invalid' with the place, also for one of a newer version. */
@@ -84,8 +84,4 @@ export function mustPlan(recipe: Recipe, sources: RecipeSource[]): RecordState {
 
 export function rowsOf(state: RecordState): number {
   return state.fields.reduce((n, field) => n + field.count, 0);
-}
-
-export function describePlan(state: RecordState): string {
-  return `${counted(rowsOf(state), 'row')}, ${counted(state.columns.length, 'column')} of ${counted(recordRanges(state).length, 'run')}`;
 }

@@ -19,8 +19,6 @@ export interface ReleaseFacts {
   note: string;
   sources: { archive: string; run: string; name: string; files: { name: string; sha256: string; bytes: number }[]; handedInBy: Person; handedInAt: string }[];
   waivers: { check: string; message: string; reason: string; by: Person; at: string }[];
-  /** base address of the server that made it */
-  url: string;
   program: string;
 }
 

@@ -7,6 +7,7 @@ import { elementBytes } from '../element.ts';
 import type { FileBytes } from '../file-bytes.ts';
 import { flatArray } from '../flat-array.ts';
 import type { Limits } from '../limits.ts';
+import { refuseLargeChunks } from '../slab-plan.ts';
 import { sizeOf, type StoredArray } from '../stored-array.ts';
 import { readHdf5Contents } from './contents.ts';
 import { needsPlugin } from './filters.ts';
@@ -33,6 +34,7 @@ export async function openHdf5Archive(path: string, file: FileBytes, offset: num
 
   function open(info: ArrayInfo): StoredArray {
     const structure = structures.get(info.path);
+    refuseLargeChunks(info.path, info.chunks, elementBytes[info.dtype], limits.chunkBytes);
     if (needsPlugin(info.filters)) library.loadPlugins();
     const read = libraryArray(library, info, elementBytes[info.dtype]);
     const direct = structure ? directArray(file, info, structure) : null;

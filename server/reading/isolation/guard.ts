@@ -12,7 +12,7 @@ export interface Deadline {
 const tick = 100;
 
 /** Resident bytes of a process (proc(5), VmRSS); null where the system does not tell. */
-export function residentBytes(pid: number): number | null {
+function residentBytes(pid: number): number | null {
   try {
     const match = /^VmRSS:\s+(\d+) kB$/m.exec(readFileSync(`/proc/${pid}/status`, 'latin1'));
     return match ? Number(match[1]) * 1024 : null;

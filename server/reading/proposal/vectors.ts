@@ -27,7 +27,7 @@ export function isVector({ shape }: ArrayInfo): boolean {
   return shape.length === 1 || (shape.length === 2 && shape.includes(1));
 }
 
-export function isIncreasing(values: Float64Array | null): boolean {
+function isIncreasing(values: Float64Array | null): boolean {
   if (!values || values.length < 2) return false;
   for (let i = 1; i < values.length; i++) if (!(values[i] > values[i - 1])) return false;
   return true;

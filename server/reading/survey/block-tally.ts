@@ -10,7 +10,7 @@
  * snapshot, as each step is one to one. Constants: golden ratio 2^32 / phi (Knuth, TAOCP 3, 6.4) and the finalisers of
  * MurmurHash3 and xxHash (public domain); the combination is ours.
  */
-export const K0 = 0x9e3779b1 | 0;
+const K0 = 0x9e3779b1 | 0;
 const K1 = 0x85ebca6b | 0;
 const K2 = 0xc2b2ae35 | 0;
 const K3 = 0x27d4eb2f | 0;

@@ -1,11 +1,23 @@
 /** What happened in the shown entries, by action; choosing one filters by it. */
-import { useMemo } from 'react';
+import { useEffect, useState } from 'react';
 import type { AuditEntry } from '#contract/operation.ts';
-import { countByAction } from './action-counts.ts';
+import type { ActionCount } from './action-counts.ts';
+
+function useActionCounts(entries: AuditEntry[]): ActionCount[] {
+  const [counts, setCounts] = useState<ActionCount[]>([]);
+  useEffect(() => {
+    const worker = new Worker(new URL('./action-counts.worker.ts', import.meta.url), { type: 'module' });
+    worker.onmessage = (event: MessageEvent<ActionCount[]>) => setCounts(event.data);
+    worker.postMessage(entries.map(({ action, actor, at }) => ({ action, actor, at })));
+    return () => worker.terminate();
+  }, [entries]);
+  return counts;
+}
 
 export default function AuditSummary({ entries, chosen, onAction }: { entries: AuditEntry[]; chosen: string | null; onAction: (action: string) => void }) {
-  const counts = useMemo(() => countByAction(entries), [entries]);
+  const counts = useActionCounts(entries);
   const most = counts[0]?.entries ?? 1;
+  if (counts.length === 0) return null;
   return (
     <details className="mb-4" open={chosen !== null}>
       <summary className="cursor-pointer text-sm text-ink-soft">By action</summary>

@@ -9,7 +9,7 @@ export interface ActionCount {
   last: string;
 }
 
-export function countByAction(entries: AuditEntry[]): ActionCount[] {
+export function countByAction(entries: Pick<AuditEntry, 'action' | 'actor' | 'at'>[]): ActionCount[] {
   return table({ action: entries.map((entry) => entry.action), actor: entries.map((entry) => entry.actor?.id ?? ''), at: entries.map((entry) => entry.at) })
     .groupby('action')
     .rollup({ entries: op.count(), people: op.distinct('actor'), last: op.max('at') })

@@ -28,15 +28,17 @@ export function CampaignsPage() {
               <p className="mt-1 line-clamp-2 max-w-prose text-ink-soft">{campaign.description}</p>
               <p className="mt-2 text-sm text-ink-soft">{campaign.myRoles.length > 0 ? `You are ${campaign.myRoles.join(', ')}.` : 'You see it through a role in the organisation.'}</p>
             </div>
-            <dl className="grid grid-cols-3 gap-x-4 gap-y-2 text-sm tabular-nums">
-              <Figure name="archives" value={campaign.counts.archives} />
-              <Figure name="datasets" value={campaign.counts.datasets} />
-              <Figure name="releases" value={campaign.counts.releases} />
-              <div className="col-span-3 flex flex-wrap items-center justify-between gap-2">
+            <div className="space-y-2 text-sm tabular-nums">
+              <dl className="grid grid-cols-3 gap-x-4">
+                <Figure name="archives" value={campaign.counts.archives} />
+                <Figure name="datasets" value={campaign.counts.datasets} />
+                <Figure name="releases" value={campaign.counts.releases} />
+              </dl>
+              <div className="flex flex-wrap items-center justify-between gap-2">
                 <SeverityCounts counts={campaign.findings} />
                 <span className="text-ink-soft">{bytesText(campaign.usedBytes)} of {bytesText(campaign.quotaBytes)}</span>
               </div>
-            </dl>
+            </div>
           </li>
         ))}
       </ul>

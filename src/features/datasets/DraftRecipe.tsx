@@ -31,7 +31,8 @@ export function DraftRecipe() {
   const recipe = history[history.length - 1] ?? draft.recipe;
   const put = useRouteMutation(routes.putRecipe, [routes.getDraft, routes.listDraftFindings]);
   const change = (next: Recipe) => setHistory([...history, next]);
-  const preview = usePreview(draft.campaign, recipe, editable);
+  const mayPreview = ability.can('create', about('Draft', { campaignId: draft.campaignId }));
+  const preview = usePreview(draft.campaign, recipe, mayPreview);
   const weigh = stepOf(recipe, 'weigh');
   return (
     <div className="space-y-8">
@@ -41,7 +42,7 @@ export function DraftRecipe() {
       {preview.data && preview.data.rows !== null && (
         <p className="tabular-nums">Matrix of {preview.data.rows} rows and {preview.data.columns} columns, {bytesText(preview.data.bytes ?? 0)}.</p>
       )}
-      {preview.isPending && <Skeleton lines={5} label="Applying the recipe to the time stamps" />}
+      {preview.isLoading && <Skeleton lines={5} label="Applying the recipe to the time stamps" />}
       <RecipeSteps campaign={draft.campaign} recipe={recipe} sources={draft.sources} effects={preview.data?.steps ?? []} onChange={editable ? change : undefined} />
       {editable && history.length > 0 && (
         <div className="sticky bottom-0 flex flex-wrap items-center gap-2 border-t border-rule bg-paper py-3">

@@ -86,6 +86,10 @@ with h5py.File("bomb.h5", "w") as f:
     packed = zlib.compress(bytes(400 * 2**20), 1)
     for j in range(6):
         bomb.id.write_direct_chunk((j, 0), packed)
+with h5py.File("vector_bomb.h5", "w") as f:
+    sound(f)
+    f.create_dataset("x", (5,), chunks=(200 * 2**20,), maxshape=(None,), dtype="f4", compression="gzip")
+    f["x"].id.write_direct_chunk((0,), zlib.compress(bytes(800 * 2**20), 1))
 with h5py.File("damaged_chunk.h5", "w") as f:
     f["t"] = t
     f.create_dataset("u", data=u, chunks=(1, 4, 5), compression="gzip")

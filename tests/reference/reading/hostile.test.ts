@@ -157,6 +157,14 @@ describe('data that are more than they seem', () => {
     });
   });
 
+  it('a small vector in a huge chunk is not decompressed either', async () => {
+    await using('vector_bomb.h5', async (archive) => {
+      expect((await survey(archive)).fields.map(({ path }) => path)).toEqual(['/u']);
+      expect(await refusalOf(() => archive.vector('/x'))).toMatchObject({ code: 'limit-exceeded', details: { path: '/x', actual: 800 * 2 ** 20 } });
+      expect(archive.peakBytes()).toBeLessThan(300e6);
+    });
+  });
+
   it('a chunk within the limit that needs more memory than allowed ends the reader, not us', async () => {
     const refusal = await refusalOf(() => using('bomb.h5', survey, { chunkBytes: 2 ** 30, memoryBytes: 300e6 }));
     expect(refusal.code).toBe('file-unreadable');

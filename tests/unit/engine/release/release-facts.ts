@@ -22,5 +22,5 @@ export const facts: ReleaseFacts = {
   licence: 'CC-BY-4.0', handlingLabel: 'internal', contact: 'wakes@example.org', note: 'Good spacing.',
   sources: [{ archive: '00000000-0000-4000-8000-000000000001', run: 're-100', name: 're100.h5', files: [{ name: 're100.h5', sha256: sha('d'), bytes: 4096 }], handedInBy: { id: 'mary', name: 'Mary' }, handedInAt: '2026-01-01T00:00:00.000Z' }],
   waivers: [{ check: 'time/gap', message: 'There is a gap.', reason: 'The pump was changed.', by: { id: 'grace', name: 'Grace' }, at: '2026-01-02T00:00:00.000Z' }],
-  url: 'https://pw.example.org', program: '0.1.0',
+  program: '0.1.0',
 };
