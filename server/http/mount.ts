@@ -16,7 +16,11 @@ export interface Call<T extends Route> {
   res: Response;
 }
 
+/** The character NUL as JSON writes it: PostgreSQL stores no text that holds one. */
+const nul = /(^|[^\\])(\\\\)*\\u0000/;
+
 function parse<S extends z.ZodType>(schema: S, value: unknown, where: string): z.output<S> {
+  if (nul.test(JSON.stringify(value ?? {}))) throw new PennyweightError('invalid-input', `The ${where} is not valid: it holds the character NUL, which no text here may hold.`);
   const result = schema.safeParse(value ?? {});
   if (result.success) return result.data;
   const issues = result.error.issues.map((issue) => ({ path: issue.path.join('.'), message: issue.message }));

@@ -47,7 +47,7 @@ export const release: JobHandler = async (app, job) => {
     } finally {
       await reader.close();
     }
-    const findings = (await findingsOfDraft(app, draft)).map(({ findingId: _id, ...finding }) => finding);
+    const findings = (await findingsOfDraft(app, draft)).map((finding) => ({ ...finding, findingId: undefined }));
     await writeFile(join(data, 'findings.json'), `${JSON.stringify(findings, null, 2)}\n`);
     const sheet = datasheet(facts);
     await writeFile(join(data, 'datasheet.md'), sheet);

@@ -10,6 +10,7 @@ import type { Survey } from '../engine/survey.ts';
 import type { ReadingMisfit } from './archive-reader.ts';
 import { enqueueCheck, type ArchiveRow } from './archives.ts';
 import { recordAudit } from './audit.ts';
+import { storable } from './storable.ts';
 import type { App, Caller } from './context.ts';
 import { replaceFindings } from './findings.ts';
 import { uncomparedArchives } from './grids.ts';
@@ -78,14 +79,15 @@ const countOf = (findings: Finding[]) => ({
 });
 
 export async function keepCheck(app: App, caller: Caller, jobId: string, checked: CheckedArchive, result: CheckResult): Promise<void> {
-  const { row } = checked, { contents, chosen, survey, findings, state } = result;
+  const { row } = checked, { survey, state } = result;
+  const contents = storable(result.contents), chosen = storable(result.chosen), findings = storable(result.findings);
   const packed = survey && survey !== checked.survey ? await packSurvey(app, survey) : null;
   await app.db.transaction(async (tx) => {
     await mustStillRun(tx, jobId);
     const [now] = await tx.select({ state: archive.state }).from(archive).where(eq(archive.id, row.id)).for('update');
     if (now.state === 'withdrawn') return;
     await tx.update(archive).set({
-      state, ...figuresOf(survey), ...(contents ? { contents, format: contents.format } : {}),
+      state, ...storable(figuresOf(survey)), ...(contents ? { contents, format: contents.format } : {}),
       ...(chosen ? { proposal: chosen.proposal, reading: chosen.reading, readingSource: chosen.source, savedReadingId: chosen.savedReadingId, misfits: chosen.misfits } : {}),
     }).where(eq(archive.id, row.id));
     await replaceFindings(tx, { archiveId: row.id }, row.campaignId, findings);

@@ -1,12 +1,10 @@
 /** Columns, modes and the mean of a built matrix, put back on their grid for the field view; and its beam. */
-import { open } from 'node:fs/promises';
 import { join } from 'node:path';
 import type { BuildSummary } from '#contract/dataset.ts';
 import { PennyweightError } from '#contract/error.ts';
 import type { SplitPart } from '#contract/recipe.ts';
 import type { Beam, FieldValues } from '#contract/shape.ts';
 import { splitCodes } from '../engine/release/build-files.ts';
-import { npyHeader } from '../engine/release/npy.ts';
 import { marksOf } from './archive-record.ts';
 import { builtCodes, builtDoubles, builtFields } from './built-arrays.ts';
 import type { App, Caller } from './context.ts';
@@ -45,34 +43,25 @@ export async function builtBeam({ folder, build }: Built): Promise<Beam> {
   };
 }
 
+async function valuesOf({ folder, build }: Built, of: 'column' | 'mode' | 'mean', index: number, { from, count }: BuildSummary['fields'][number]): Promise<Float64Array> {
+  if (of === 'mean') return (await builtDoubles(folder, 'mean.npy')).subarray(index * build.rows + from, index * build.rows + from + count);
+  const reader = of === 'column' ? await MatrixReader.open(join(folder, 'matrix.npy'), build) : await MatrixReader.open(join(folder, 'modes.npy'), { rows: build.rows, columns: build.modes, type: 'float64' });
+  try {
+    return await reader.block(index, 1, from, count);
+  } finally {
+    await reader.close();
+  }
+}
+
 export async function builtValues({ folder, build }: Built, asked: { of: 'column' | 'mode' | 'mean'; index: number; field: string }): Promise<FieldValues> {
   const field = build.fields.find((each) => each.name === asked.field);
   if (!field) throw new PennyweightError('not-found', `The matrix has no field "${asked.field}": it has ${build.fields.map((each) => each.name).join(', ')}.`, { field: asked.field });
   const perRun = build.centred === 'weighted-mean-per-run';
   const count = asked.of === 'column' ? build.columns : asked.of === 'mode' ? build.modes : perRun ? build.records.length : 1;
   if (asked.index >= count) throw new PennyweightError('range-invalid', `${asked.of} ${asked.index} is outside: there ${count === 1 ? 'is 1' : `are ${count}`}, numbered from 0.`, { index: asked.index, count });
-  let values: Float64Array, time: number | null = null;
-  if (asked.of === 'column') {
-    const reader = await MatrixReader.open(join(folder, 'matrix.npy'), build);
-    try {
-      values = await reader.block(asked.index, 1, field.from, field.count);
-    } finally {
-      await reader.close();
-    }
-    const stamp = (await builtDoubles(folder, 'time.npy'))[asked.index];
-    time = Number.isFinite(stamp) ? stamp : null;
-  } else {
-    const columns = asked.of === 'mode' ? build.modes : count;
-    const start = npyHeader('float64', asked.of === 'mean' && !perRun ? [build.rows] : [build.rows, columns], asked.of === 'mode' || perRun).length;
-    const handle = await open(join(folder, asked.of === 'mode' ? 'modes.npy' : 'mean.npy'), 'r');
-    try {
-      const bytes = new Uint8Array(field.count * 8);
-      await handle.read(bytes, 0, bytes.length, start + (asked.index * build.rows + field.from) * 8);
-      values = new Float64Array(bytes.buffer);
-    } finally {
-      await handle.close();
-    }
-  }
+  const values = await valuesOf({ folder, build }, asked.of, asked.index, field);
+  const stamp = asked.of === 'column' ? (await builtDoubles(folder, 'time.npy'))[asked.index] : NaN;
+  const time = Number.isFinite(stamp) ? stamp : null;
   const grid = (await builtFields(folder)).fields.find((each) => each.name === asked.field)!;
   const label = asked.of === 'mean' ? `what was subtracted, ${asked.field}` : `${asked.of} ${asked.of === 'mode' ? asked.index + 1 : asked.index}, ${asked.field}`;
   return fieldValues(values, grid.axes.map((axis) => ({ ...axis, nodes: axis.nodes ? Float64Array.from(axis.nodes) : null })), { label, field: asked.field, unit: asked.of === 'mode' ? null : field.unit, time, index: asked.index, count });

@@ -2,7 +2,7 @@
 import { eq } from 'drizzle-orm';
 import { PennyweightError } from '#contract/error.ts';
 import type { Queryable } from '../db/database.ts';
-import { draft, job } from '../db/schema/index.ts';
+import { job, type draft } from '../db/schema/index.ts';
 
 export type DraftRow = typeof draft.$inferSelect;
 

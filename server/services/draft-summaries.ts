@@ -1,12 +1,11 @@
 /** Drafts in lists, and the names around them. */
 import { eq, inArray } from 'drizzle-orm';
 import type { DraftSummary } from '#contract/dataset.ts';
-import { campaign, dataset, draft, release } from '../db/schema/index.ts';
+import { campaign, dataset, release } from '../db/schema/index.ts';
 import { findingCounts } from './archives.ts';
 import type { App } from './context.ts';
+import type { DraftRow } from './draft-states.ts';
 import { peopleById } from './people.ts';
-
-type DraftRow = typeof draft.$inferSelect;
 
 export async function draftSummaries(app: App, rows: DraftRow[]): Promise<DraftSummary[]> {
   if (rows.length === 0) return [];

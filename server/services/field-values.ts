@@ -38,6 +38,7 @@ export function fieldValues(values: Float64Array, axes: GridAxis[], words: Pick<
   walk(0, 0);
   let min = Infinity, max = -Infinity;
   for (const value of values) {
+    if (!Number.isFinite(value)) continue;
     if (value < min) min = value;
     if (value > max) max = value;
   }

@@ -44,9 +44,11 @@ export async function replaceFindings(tx: Queryable, owner: { archiveId: string 
   }));
 }
 
+const gone = () => new PennyweightError('not-found', 'There is no such finding any more: the archive or draft was checked again. Reload the page.');
+
 async function find(app: App, caller: Caller, id: string): Promise<FindingRow> {
   const [row] = await app.db.select().from(finding).where(eq(finding.id, id));
-  if (!row) throw new PennyweightError('not-found', 'There is no such finding any more: the archive or draft was checked again. Reload the page.');
+  if (!row) throw gone();
   mustSee(caller, 'Finding', row, 'finding');
   authorise(caller, 'waive', 'Finding', row);
   return row;
@@ -59,6 +61,7 @@ export async function waiveFinding(app: App, caller: Caller, id: string, reason:
   if (row.severity !== 'caution') throw new PennyweightError('wrong-state', row.severity === 'blocker' ? 'A blocker cannot be waived: it must be repaired.' : 'A note needs no waiver.');
   const [after] = await app.db.transaction(async (tx) => {
     const changed = await tx.update(finding).set({ waivedReason: reason, waivedBy: caller.user.id, waivedAt: new Date() }).where(eq(finding.id, id)).returning();
+    if (changed.length === 0) throw gone();
     await recordAudit(tx, caller, { action: 'finding.waive', objectType: 'finding', objectId: id, label: labelOf(row), campaignId: row.campaignId, before: { waiver: row.waivedReason }, after: { message: row.message, archive: row.archiveId, draft: row.draftId }, reason });
     return changed;
   });
@@ -70,6 +73,7 @@ export async function revokeWaiver(app: App, caller: Caller, id: string): Promis
   if (!row.waivedAt) throw new PennyweightError('wrong-state', 'This finding is not waived.');
   const [after] = await app.db.transaction(async (tx) => {
     const changed = await tx.update(finding).set({ waivedReason: null, waivedBy: null, waivedAt: null }).where(eq(finding.id, id)).returning();
+    if (changed.length === 0) throw gone();
     await recordAudit(tx, caller, { action: 'finding.revoke-waiver', objectType: 'finding', objectId: id, label: labelOf(row), campaignId: row.campaignId, before: { waiver: row.waivedReason } });
     return changed;
   });

@@ -99,7 +99,7 @@ async function makeArchive(app: App, tx: Transaction, caller: Caller, row: Deliv
   const [{ runId }] = await tx.insert(run).values({ campaignId, name: row.run, solver: row.solver, parameters: row.parameters })
     .onConflictDoUpdate({ target: [run.campaignId, run.name], set: { solver: sql`coalesce(nullif(${run.solver}, ''), excluded.solver)`, parameters: sql`${run.parameters} || excluded.parameters` } })
     .returning({ runId: run.id });
-  const jobId = await app.queue.enqueue(tx, { kind: 'check', subjectType: 'archive', subjectId: id, label: name, campaignId, createdBy: row.createdBy });
+  const jobId = await app.queue.enqueue(tx, { kind: 'check', subjectType: 'archive', subjectId: id, label: `Check of ${name}`, campaignId, createdBy: row.createdBy });
   await tx.insert(archive).values({ id, campaignId, runId, deliveryId: row.id, name, bytes, note: row.note, jobId, createdBy: row.createdBy });
   await tx.insert(archiveFile).values(files.map((file, position) => ({ archiveId: id, position, name: file.name, sha256: file.sha256 as string, bytes: file.bytes })));
   await tx.update(delivery).set({ state: 'complete', updatedAt: sql`now()` }).where(and(eq(delivery.id, row.id), eq(delivery.state, 'open')));

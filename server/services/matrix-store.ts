@@ -142,14 +142,3 @@ export async function writeTiles(path: string, rows: number, columns: number, ti
     await file.close();
   }
 }
-
-/** `count` doubles of column `column` from row `from` of such a file. */
-export async function readDoubles(path: string, rows: number, column: number, from: number, count: number, start: number): Promise<Float64Array> {
-  const file = await ArrayFile.open(path), values = new Float64Array(count);
-  try {
-    await file.read(new Uint8Array(values.buffer), start + 8 * (column * rows + from));
-    return values;
-  } finally {
-    await file.close();
-  }
-}

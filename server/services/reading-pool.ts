@@ -5,7 +5,7 @@ import { archiveFile } from '../db/schema/index.ts';
 import type { OpenArchive } from './archive-reader.ts';
 import type { App } from './context.ts';
 
-const most = 2;
+const most = 3;
 const idleMillis = 60_000;
 
 interface Slot {
@@ -31,28 +31,39 @@ async function drop(id: string, slot: Slot): Promise<void> {
   await slot.opened.then((archive) => archive.close(), () => undefined);
 }
 
-/** Runs `work` on the open archive; an archive whose reading fails is closed and opened anew by the next caller. */
-export async function withArchive<T>(app: App, archiveId: string, work: (archive: OpenArchive) => Promise<T>): Promise<T> {
-  let slot = slots.get(archiveId);
-  if (!slot) {
-    const idle = [...slots].find(([, each]) => each.users === 0);
-    if (slots.size >= most && idle) await drop(...idle);
-    slot = { opened: openArchiveFiles(app, archiveId), queue: Promise.resolve(), users: 0, timer: null };
+/** The archive's slot, taken for one user more. Where all are busy, waits until one is free: each is a process of its own. */
+async function take(app: App, archiveId: string): Promise<Slot> {
+  for (;;) {
+    const idle = [...slots].find(([, { users }]) => users === 0);
+    const known = slots.get(archiveId);
+    if (!known && slots.size >= most) {
+      await (idle ? drop(...idle) : Promise.race([...slots.values()].map(({ queue }) => queue)));
+      continue;
+    }
+    const slot = known ?? { opened: openArchiveFiles(app, archiveId), queue: Promise.resolve(), users: 0, timer: null };
     slots.set(archiveId, slot);
+    slot.users++;
+    if (slot.timer) clearTimeout(slot.timer);
+    return slot;
   }
-  const mine = slot;
-  mine.users++;
-  if (mine.timer) clearTimeout(mine.timer);
-  const turn = mine.queue.then(async () => work(await mine.opened));
-  mine.queue = turn.catch(() => undefined);
+}
+
+/** After one of these the reading process is gone, or never was; any other refusal leaves it as it is. */
+const isDeath = (cause: unknown) => !(cause instanceof PennyweightError) || ['file-unreadable', 'unsupported-format', 'limit-exceeded', 'wrong-state', 'not-found'].includes(cause.code);
+
+/** Runs `work` on the open archive; one whose reading process died is opened anew by the next caller. */
+export async function withArchive<T>(app: App, archiveId: string, work: (archive: OpenArchive) => Promise<T>): Promise<T> {
+  const slot = await take(app, archiveId);
+  const turn = slot.queue.then(async () => work(await slot.opened));
+  slot.queue = turn.catch(() => undefined);
   try {
     return await turn;
   } catch (cause) {
-    await drop(archiveId, mine);
+    if (isDeath(cause)) await drop(archiveId, slot);
     throw cause;
   } finally {
-    mine.users--;
-    if (mine.users === 0 && slots.get(archiveId) === mine) mine.timer = setTimeout(() => void drop(archiveId, mine), idleMillis).unref();
+    slot.users--;
+    if (slot.users === 0 && slots.get(archiveId) === slot) slot.timer = setTimeout(() => void drop(archiveId, slot), idleMillis).unref();
   }
 }
 

@@ -70,12 +70,13 @@ export class ReceivingStore extends FileStore {
     let at = offset;
     let gathered: Buffer[] = [], gatheredBytes = 0, flushedAt = Date.now();
     let writing: Promise<void> = Promise.resolve();
-    let syncing: Promise<void> | null = null, syncedTo = offset;
+    let syncing: Promise<void> = Promise.resolve(), syncBusy = false, syncedTo = offset;
     // A failure here shows again when the whole file is synced.
     const syncBehind = (): void => {
-      if (syncing || at - syncedTo < syncBlock) return;
+      if (syncBusy || at - syncedTo < syncBlock) return;
       syncedTo = at;
-      syncing = handle.datasync().catch(() => undefined).finally(() => (syncing = null));
+      syncBusy = true;
+      syncing = handle.datasync().catch(() => undefined).finally(() => (syncBusy = false));
     };
     const flush = async (): Promise<void> => {
       await writing;
@@ -89,7 +90,7 @@ export class ReceivingStore extends FileStore {
       syncBehind();
     };
     try {
-      let broken: unknown = null;
+      let broken: Error | null = null;
       try {
         for await (const chunk of readable as AsyncIterable<Buffer>) {
           hash.update(chunk);
@@ -99,7 +100,7 @@ export class ReceivingStore extends FileStore {
           if (gatheredBytes >= writeBlock || Date.now() - flushedAt >= writeMillis) await flush();
         }
       } catch (cause) {
-        broken = cause;
+        broken = cause as Error;
       }
       await flush();
       await writing;

@@ -1,5 +1,5 @@
 /** A snapshot, mode or mean: a line in one dimension, an image in two, a slice in three; with colour bar and values under the pointer. */
-import { useMemo, useState } from 'react';
+import { useState } from 'react';
 import type { FieldValues } from '#contract/shape.ts';
 import { quantityText } from '../components/number-format.ts';
 import { Select } from '../components/Select.tsx';
@@ -24,8 +24,7 @@ export default function FieldView({ data, scale, onIndex, isFetching }: Props) {
   // Axis that is cut: of more than two, the shortest unless chosen otherwise.
   const cut = long.length > 2 ? (long.find(({ i }) => i === across) ?? long.reduce((least, each) => (each.axis.count < least.axis.count ? each : least))) : null;
   const shown = Math.min(layer, (cut?.axis.count ?? 1) - 1);
-  const held = cut?.i ?? null;
-  const slice = useMemo(() => sliceOf(data, held === null ? null : { axis: held, index: shown }), [data, held, shown]);
+  const slice = sliceOf(data, cut && { axis: cut.i, index: shown });
   const range = colourRange(scale, data.min, data.max);
   const thinned = data.stride.some((stride) => stride > 1);
   return (

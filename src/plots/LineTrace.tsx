@@ -47,7 +47,7 @@ export default function LineTrace({ label, unit, x, xUnit, xName = x ? 'time' : 
       path: pieces.filter((piece) => piece.length > 1).map((piece) => pathOf(thinLine(piece, inner))).join(''),
       dots: pieces.filter((piece) => piece.length === 1).map((piece) => piece[0]),
       xTicks: linearTicks(xMin, xMax, Math.max(2, inner / 110)).map((value) => [value, toXValue(value)] as const),
-      yTicks: linearTicks(yMin, yMax, 3).map((value) => [value, toY(value)] as const),
+      yTicks: linearTicks(yMin, yMax, 5).map((value) => [value, toY(value)] as const),
     };
   }, [x, y, inner]);
   const words = (j: number) => `${xName} ${quantityText(x?.[j] ?? j, 8)}${x && xUnit ? ` ${xUnit}` : ''}: ${y[j] === null ? 'no finite value' : `${quantityText(y[j])}${unit ? ` ${unit}` : ''}`}`;

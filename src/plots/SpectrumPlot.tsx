@@ -75,8 +75,8 @@ export default function SpectrumPlot({ singularValues, floor, rank, fileName }: 
             <text x={edge.left} y={height - edge.bottom + 18} fill="var(--ink-soft)">1</text>
             <text x={edge.left + inner / 2} y={height - edge.bottom + 18} textAnchor="middle" fill="var(--ink-soft)">rank</text>
             <text x={width - edge.right} y={height - edge.bottom + 18} textAnchor="end" fill="var(--ink-soft)">{count}</text>
-            <text x={edge.left} y={height - 6} fill="var(--ink-soft)">left: singular value</text>
-            <text x={width - edge.right} y={height - 6} textAnchor="end" fill="var(--verdigris)">right: energy up to the rank</text>
+            <text x={edge.left} y={height - 6} fill="var(--ink-soft)">{inner > 380 ? 'left: singular value' : 'singular value'}</text>
+            <text x={width - edge.right} y={height - 6} textAnchor="end" fill="var(--verdigris)">{inner > 380 ? 'right: energy up to the rank' : 'energy'}</text>
           </svg>
         )}
       </div>

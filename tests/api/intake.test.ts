@@ -353,6 +353,13 @@ describe('an announcement', () => {
     expect(refused.body).toMatchObject({ status: 400, code: 'invalid-input' });
   });
 
+  it('is refused where a text holds the character NUL, and not where it speaks of one', async () => {
+    const announced = (run: string) => contributor.send(routes.createDelivery, { params: { campaign }, body: { run, files: [{ name: 'a.h5', bytes: 1 }] } });
+    expect((await announced('a\u0000b')).body).toMatchObject({ status: 400, code: 'invalid-input' });
+    expect((await announced('a\\u0000b')).status).toBe(201);
+    expect((await contributor.http.get(`/api/campaigns/${campaign}/archives?q=%00`)).status).toBe(400);
+  });
+
   it('that is cancelled loses its bytes and takes no more', async () => {
     const bytes = randomBytes(3000);
     const delivery = await announce([{ bytes }]);

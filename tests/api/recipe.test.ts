@@ -122,6 +122,33 @@ describe('a build', () => {
     expect(build!.steps.map((step) => step.step)).toEqual(['select', 'order', 'centre', 'weigh', 'split', 'cast']);
   });
 
+  it.each([
+    ['weighted-mean-per-run', (mean: number[]) => expect(Math.max(...mean.map(Math.abs))).toBeLessThan(1e-13)],
+    ['first-snapshot', (_: number[], first: Float64Array) => expect(first.every((value) => value === 0)).toBe(true)],
+    ['nothing', (mean: number[]) => expect(Math.max(...mean.map(Math.abs))).toBeGreaterThan(0.1)],
+  ] as const)('subtracts %s', async (subtract, expectation) => {
+    const { id, build } = await wake.built(wake.recipe([adaptive, steady], { centre: { subtract } })), folder = await folderOf(id);
+    const { rows, columns, records } = build!;
+    const doubles = async (name: string) => {
+      const bytes = await readFile(join(folder, name));
+      return new Float64Array(bytes.buffer.slice(bytes.byteOffset + 10 + bytes.readUInt16LE(8), bytes.byteOffset + bytes.length));
+    };
+    const X = await doubles('matrix.npy'), a = await doubles('time_weights.npy'), subtracted = await doubles('mean.npy');
+    expect(X).toHaveLength(rows * columns);
+    // Weighted mean of what is left, of each run by itself.
+    const left = records.flatMap(({ from, count }) => Array.from({ length: rows }, (_, i) => {
+      let sum = 0, total = 0;
+      for (let j = from; j < from + count; j++) {
+        sum += a[j] * X[j * rows + i];
+        total += a[j];
+      }
+      return sum / total;
+    }));
+    expectation(left, X.subarray(0, rows));
+    expect(subtracted.length / rows).toBe(subtract === 'weighted-mean-per-run' ? 2 : 1);
+    expect(build!.centred).toBe(subtract);
+  });
+
   it('of the same sources and recipe is the same to the last byte', async () => {
     const recipe = wake.recipe([adaptive, steady], { split: { by: 'blocks', shares: [0.6, 0.2, 0.2] } });
     const [one, other] = await Promise.all([wake.built(recipe), wake.built(recipe)]);

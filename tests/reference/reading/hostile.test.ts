@@ -159,8 +159,9 @@ describe('data that are more than they seem', () => {
 
   it('a small vector in a huge chunk is not decompressed either', async () => {
     await using('vector_bomb.h5', async (archive) => {
-      expect((await survey(archive)).fields.map(({ path }) => path)).toEqual(['/u']);
-      expect(await refusalOf(() => archive.vector('/x'))).toMatchObject({ code: 'limit-exceeded', details: { path: '/x', actual: 800 * 2 ** 20 } });
+      const expected = { code: 'limit-exceeded', details: { path: '/x', actual: 800 * 2 ** 20 } };
+      expect(await refusalOf(() => archive.vector('/x'))).toMatchObject(expected);
+      expect(await refusalOf(() => survey(archive))).toMatchObject(expected);
       expect(archive.peakBytes()).toBeLessThan(300e6);
     });
   });
