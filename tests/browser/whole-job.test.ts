@@ -96,7 +96,7 @@ describe('the whole job', { sequential: true }, () => {
     await page.getByRole('button', { name: 'Submit', exact: true }).click();
     await shows(page, 'waits for a steward');
     await page.getByRole('link', { name: 'Findings' }).click();
-    await shows(page, /Settled by the recipe: select holds archives of one grid only/);
+    await shows(page, /Settled by the recipe: select takes runs of one grid only/);
     await page.getByRole('link', { name: 'Matrix and spectrum' }).click();
     await shows(page, '960 x 61');
     await page.getByRole('button', { name: 'Approve' }).waitFor({ state: 'detached' });
