@@ -46,9 +46,9 @@ export const check: JobHandler = async (app, job) => {
   await keepCheck(app, job.caller, job.id, checked, { ...known, state: failure ? 'unreadable' : 'checked', findings });
 };
 
-/** The reader's clauses begin in lower case. */
+/** The reader's clauses begin in lower case; those that begin with the name of a file stay as they are. */
 function sentence(clause: string): string {
-  return clause.charAt(0).toUpperCase() + clause.slice(1);
+  return /^(the|no|an?|it|attribute|dataset) /.test(clause) ? clause.charAt(0).toUpperCase() + clause.slice(1) : clause;
 }
 
 /** The last survey, when the archive would be read in the same way again: then nothing of it is opened. */
@@ -63,6 +63,7 @@ async function readArchive(app: App, job: JobHandle, checked: CheckedArchive, kn
   const close = () => void open.close();
   job.signal.addEventListener('abort', close);
   try {
+    job.signal.throwIfAborted();
     const contents = (known.contents = await open.contents());
     const chosen = (known.chosen = await chooseReading(open, checked));
     known.survey = await surveyArchive(open, contents, chosen.reading, checked.survey, (done, total) => job.report({ done, total, unit: 'bytes', phase: 'reading' }));

@@ -46,7 +46,13 @@ async function provenKernel(kernel: string | null): Promise<string> {
   return stdout;
 }
 
-const sentence = (cause: unknown) => /PennyweightError: (.*)/.exec(String(cause))?.[1] ?? String(cause).split('\n')[0];
+/** Why a kernel is not used: the child's last error, or the signal that ended it. */
+function failureOf(kernel: string | null, cause: unknown): string {
+  if (cause instanceof PennyweightError) return cause.message;
+  const { stderr, signal } = cause as { stderr?: string; signal?: string | null };
+  const said = /Error: (.*)/.exec(stderr ?? '')?.[1];
+  return `the proof of ${kernel ?? 'the usual kernel'} failed: ${signal ? `ended by ${signal}` : (said ?? String(cause))}`;
+}
 
 /** Not remembered: each call proves and opens anew. */
 export async function chooseLinearAlgebra(env: NodeJS.ProcessEnv): Promise<LinearAlgebra> {
@@ -62,7 +68,7 @@ export async function chooseLinearAlgebra(env: NodeJS.ProcessEnv): Promise<Linea
       reason = `this process runs the kernel ${algebra.kernel}, and ${proven} was proven: open the linear algebra in the main thread first`;
       break;
     } catch (cause) {
-      reason = cause instanceof PennyweightError ? cause.message : sentence(cause);
+      reason = failureOf(kernel, cause);
     }
   }
   return portableBecause(reason);

@@ -23,11 +23,11 @@ const rowBlock = 2048;
 /** 1 + 6 m + 2 m^2, the work space of dsyevd, must fit a 32-bit integer. */
 const mostColumns = 32_000;
 
-/** [routine, result, arguments]; pointers are typed arrays, used in place. */
+/** Pointers are typed arrays, used in place. */
 const routines = {
   gram: 'void cblas_dsyrk(int, int, int, int, int, double, const double *, int, double, double *, int)',
   product:
-    'void cblas_dgemm(int, int, int, int, int, double, const double *, int, const double *, int, double, double *, int)',
+    'void cblas_dgemm(int, int, int, int, int, int, double, const double *, int, const double *, int, double, double *, int)',
   eigen:
     'void dsyevd_(const char *, const char *, int *, double *, int *, double *, double *, int *, int *, int *, int *)',
   kernel: 'const char *openblas_get_corename()',
@@ -39,11 +39,16 @@ type Routine = (...values: unknown[]) => unknown;
 
 function load(): Record<keyof typeof routines, Routine> {
   try {
+    const { gram, product, eigen, kernel, config, threads } = routines;
     const handle = koffi.load(library);
-    return Object.fromEntries(Object.entries(routines).map(([name, text]) => [name, handle.func(text)])) as Record<
-      keyof typeof routines,
-      Routine
-    >;
+    return {
+      gram: handle.func(gram),
+      product: handle.func(product),
+      eigen: handle.func(eigen),
+      kernel: handle.func(kernel),
+      config: handle.func(config),
+      threads: handle.func(threads),
+    };
   } catch (cause) {
     throw new PennyweightError(
       'unavailable',

@@ -7,6 +7,7 @@ import type { LinearAlgebra } from './linear-algebra.ts';
 const rowBlock = 256;
 
 /** Adds the dot products of four columns j.. with four columns k.. over rows [from, to). */
+// prettier-ignore
 function block4(
   gram: Float64Array,
   m: number,

@@ -96,6 +96,7 @@ export async function keepCheck(app: App, caller: Caller, jobId: string, checked
       before: { state: row.state, reading: row.readingSource }, after: { state, reading: chosen?.source ?? row.readingSource, findings: countOf(findings), checks: [...new Set(findings.map(({ id }) => id))], job: jobId },
     });
     if (survey && packed) await keepNewSurvey(app, tx, caller, row, survey, packed);
+    if (!survey) await tx.delete(surveyTable).where(eq(surveyTable.archiveId, row.id));
   });
 }
 

@@ -51,11 +51,6 @@ export async function listDeliveries(app: App, caller: Caller, slug: string): Pr
   return describe(app, found.filter((row) => caller.ability.can('read', about('Delivery', factsOf(row)))));
 }
 
-/** Of the caller's own, in all campaigns. */
-export async function myDeliveries(app: App, caller: Caller): Promise<Delivery[]> {
-  return describe(app, await rows(app).where(and(eq(delivery.createdBy, caller.user.id), current())).orderBy(desc(delivery.createdAt)).limit(50));
-}
-
 async function find(app: App, caller: Caller, id: string): Promise<Row> {
   const [row] = await rows(app).where(eq(delivery.id, id));
   if (!row) throw new PennyweightError('not-found', 'There is no such delivery.');

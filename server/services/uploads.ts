@@ -48,9 +48,17 @@ export function openUploadDoor(app: App): UploadDoor {
     await app.db.update(delivery).set({ updatedAt: sql`now()`, expiresAt: untilGivenUp() }).where(eq(delivery.id, id));
   }
 
+  async function mustBeWhole(file: AnnouncedFile['file']): Promise<void> {
+    const received = (await receivedBytes(folder, file.id)) ?? 0;
+    if (received !== file.bytes) throw new PennyweightError('upload-incomplete', `${received} of ${file.bytes} bytes of ${file.name} are here: ask for the offset and go on from there.`, { received, announced: file.bytes });
+  }
+
   async function finishOnce(caller: Caller, found: AnnouncedFile): Promise<void> {
     const { file, delivery: { id } } = found;
-    if (file.state !== 'verified') await verifyFile(app, caller, found, () => store.digest(file.id, file.bytes));
+    if (file.state !== 'verified') {
+      await mustBeWhole(file);
+      await verifyFile(app, caller, found, () => store.digest(file.id, file.bytes));
+    }
     await completeDelivery(app, caller, id);
   }
 
@@ -65,7 +73,10 @@ export function openUploadDoor(app: App): UploadDoor {
       if (metadata.filename && metadata.filename !== file.name) throw new PennyweightError('invalid-input', `"${file.name}" was announced here, not "${metadata.filename}": choose the announced file.`, { announced: file.name, sent: metadata.filename });
       if (found.delivery.state !== 'open' || file.state === 'verified') throw closedDelivery({ ...found, delivery: { ...found.delivery, state: file.state === 'verified' ? 'complete' : found.delivery.state } });
       checkLength(file, length);
-      if (file.state === 'waiting') await store.remove(file.id);
+      if (file.state === 'waiting') {
+        lock.mustBeFree(file.id);
+        await store.remove(file.id);
+      }
       await touch(found);
       return file.id;
     },
@@ -81,6 +92,7 @@ export function openUploadDoor(app: App): UploadDoor {
       if (state !== 'open') throw closedDelivery(found);
       if (found.file.state === 'verified') throw closedDelivery({ ...found, delivery: { ...found.delivery, state: 'complete' } });
       if (request === 'DELETE') {
+        lock.mustBeFree(id);
         await app.db.update(deliveryFile).set({ state: 'waiting' }).where(eq(deliveryFile.id, id));
         return;
       }

@@ -34,6 +34,11 @@ export class ReceivingLock implements Locker {
     return this.#holders.has(id);
   }
 
+  /** Refuses what would pull the file away from under its holder. */
+  mustBeFree(id: string): void {
+    if (this.holds(id)) throw locked(id);
+  }
+
   newLock(id: string): Lock {
     let mine: Holder | null = null;
     return {

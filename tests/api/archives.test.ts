@@ -120,6 +120,7 @@ describe('an archive that cannot be read', () => {
     expect(others).toEqual([]);
     expect(finding).toMatchObject({ id: 'file/unreadable', severity: 'blocker', state: 'open' });
     expect(finding.message).toMatch(sentence);
+    expect(finding.message).toContain(name);
     expect(finding.message.match(/[.!?](\s|$)/g)).toHaveLength(1);
     const job = await contributor.call(routes.getJob, { params: { job: archive.jobId! } });
     expect(job).toMatchObject({ state: 'done', attempts: 1, problem: null });

@@ -312,6 +312,7 @@ describe('two windows that send the same file', () => {
     await expect.poll(async () => (await look(delivery)).files[0].received).toBe(310_000);
     expect(await sender.patch(id, 0, bytes)).toMatchObject({ status: 423, problem: { code: 'upload-locked' } });
     expect((await sender.look(id)).status).toBe(423);
+    expect((await sender.remove(id)).status).toBe(423);
     first.request.end(bytes.subarray(310_000));
     expect((await first.answered).status).toBe(204);
     expect(await look(delivery)).toMatchObject({ state: 'complete', files: [{ sha256: sha256(bytes) }] });
