@@ -21,8 +21,9 @@ export async function becomeOnlyWorker(databaseUrl: string, stop: AbortSignal): 
   while (!stop.aborted) {
     const client = new pg.Client({ connectionString: databaseUrl, application_name: 'pennyweight worker', keepAlive: true });
     const lost = new Promise<void>((resolve) => {
-      client.once('error', () => resolve());
-      client.once('end', () => resolve());
+      // Not once: a connection that breaks may say so twice, and a word that nobody hears ends the process.
+      client.on('error', () => resolve());
+      client.on('end', () => resolve());
     });
     const held = await hold(client, stop).catch(() => false);
     if (held) return { lost, release: () => client.end().catch(() => undefined) };

@@ -8,14 +8,12 @@ import { mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { createServer, type AddressInfo } from 'node:net';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
-import { sql } from 'drizzle-orm';
 import { abilityFor } from '#contract/access.ts';
 import { PennyweightError } from '#contract/error.ts';
 import { readConfig } from '../config.ts';
 import { openDatabase, type Database } from '../db/database.ts';
-import { user } from '../db/schema/index.ts';
 import { writeHdf5 } from '../reading/hdf5-writer.ts';
-import { makeAccount } from '../services/accounts.ts';
+import { anyAccount, makeAccount } from '../services/accounts.ts';
 import { recordAudit } from '../services/audit.ts';
 import type { Caller } from '../services/context.ts';
 import { setRoles } from '../services/roles.ts';
@@ -75,8 +73,7 @@ async function answers(url: string, parts: ChildProcess[]): Promise<void> {
 const config = readConfig(process.env);
 if (!config.demo) process.exit(0);
 const db = openDatabase(config.databaseUrl, { max: 2 });
-const [{ people }] = await db.select({ people: sql<number>`count(*)::int` }).from(user);
-if (people > 0) {
+if (await anyAccount(db)) {
   await db.$client.end();
   process.exit(0);
 }

@@ -1,6 +1,6 @@
 /**
  * The linear algebra of this process: OpenBLAS where it is there and proven to compute rightly on this processor, else the
- * portable routines. PENNYWEIGHT_LINALG=portable asks for the latter.
+ * portable routines. PENNYWEIGHT_LINALG=portable asks for the latter; PENNYWEIGHT_OPENBLAS names another library file.
  */
 import { execFile } from 'node:child_process';
 import { readFileSync } from 'node:fs';
@@ -16,6 +16,8 @@ import { openOpenblas } from './openblas.ts';
 import { portableBecause } from './portable.ts';
 
 const coreType = 'OPENBLAS_CORETYPE';
+const libraryName = 'PENNYWEIGHT_OPENBLAS';
+const steering = /^(OPENBLAS_|OMP_|LD_LIBRARY_PATH$|PENNYWEIGHT_OPENBLAS$)/;
 /** A proof takes half a second, most of it the start of Node.js; a machine may be busy. */
 const proofMillis = 30_000;
 
@@ -31,13 +33,14 @@ function processorText(): string {
  * Name of the kernel that the library ran in a child process, where a wrong one may crash or compute nonsense without harm.
  * Runs from source (.ts) and compiled (.js) alike. Errors: the child's own, or its end by a signal.
  */
-async function provenKernel(kernel: string | null): Promise<string> {
+async function provenKernel(kernel: string | null, environment: NodeJS.ProcessEnv): Promise<string> {
   const extension = extname(fileURLToPath(import.meta.url));
   const entry = fileURLToPath(new URL(`./proof-child${extension}`, import.meta.url));
   const loader =
     extension === '.ts' ? ['--import', pathToFileURL(createRequire(import.meta.url).resolve('tsx')).href] : [];
-  const { LD_LIBRARY_PATH } = process.env;
-  const env = { ...(LD_LIBRARY_PATH && { LD_LIBRARY_PATH }), ...(kernel && { [coreType]: kernel }) };
+  // What steers the library here steers it there, and nothing else of ours: no secret, no option for Node.js.
+  const env = Object.fromEntries(Object.entries(environment).filter(([name]) => steering.test(name)));
+  if (kernel) env[coreType] = kernel;
   const { stdout } = await promisify(execFile)(process.execPath, [...loader, entry], {
     env,
     timeout: proofMillis,
@@ -46,12 +49,16 @@ async function provenKernel(kernel: string | null): Promise<string> {
   return stdout;
 }
 
-/** Why a kernel is not used: the child's last error, or the signal that ended it. */
-function failureOf(kernel: string | null, cause: unknown): string {
-  if (cause instanceof PennyweightError) return cause.message;
-  const { stderr, signal } = cause as { stderr?: string; signal?: string | null };
-  const said = /Error: (.*)/.exec(stderr ?? '')?.[1];
-  return `the proof of ${kernel ?? 'the usual kernel'} failed: ${signal ? `ended by ${signal}` : (said ?? String(cause))}`;
+/** What the child said last, or the signal that ended it; `lost` when no other kernel would help. See proof-child.ts. */
+function failureOf(kernel: string | null, cause: unknown): { why: string; lost: boolean } {
+  if (cause instanceof PennyweightError) return { why: cause.message, lost: true };
+  const {
+    stderr = '',
+    signal = null,
+    code = null,
+  } = cause as { stderr?: string; signal?: string | null; code?: unknown };
+  const said = signal ? `the process ended by ${signal}` : stderr.trim() || String(cause);
+  return { why: `the kernel ${kernel ?? 'of its own choice'} failed its proof: ${said}`, lost: code === 2 };
 }
 
 /** Not remembered: each call proves and opens anew. */
@@ -60,15 +67,18 @@ export async function chooseLinearAlgebra(env: NodeJS.ProcessEnv): Promise<Linea
   let reason = '';
   for (const kernel of kernelsFor(processorText(), env[coreType])) {
     try {
-      const proven = await provenKernel(kernel);
+      const proven = await provenKernel(kernel, env);
       // The library reads the variable when it is loaded; a worker thread's own environment does not reach it.
       if (kernel && isMainThread) process.env[coreType] = kernel;
-      const algebra = openOpenblas();
+      const algebra = openOpenblas(env[libraryName]);
       if (algebra.kernel === proven) return algebra;
-      reason = `this process runs the kernel ${algebra.kernel}, and ${proven} was proven: open the linear algebra in the main thread first`;
-      break;
+      return portableBecause(
+        `this process runs the kernel ${algebra.kernel} and ${proven} was proven: choose in the main thread first`,
+      );
     } catch (cause) {
-      reason = failureOf(kernel, cause);
+      const { why, lost } = failureOf(kernel, cause);
+      reason = why;
+      if (lost) break;
     }
   }
   return portableBecause(reason);

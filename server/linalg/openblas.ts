@@ -12,7 +12,8 @@ export interface Openblas extends LinearAlgebra {
   readonly kernel: string;
 }
 
-const library = 'libopenblas.so.0';
+/** Debian's libopenblas0-pthread */
+const usualLibrary = 'libopenblas.so.0';
 /** Enumerators of the C interface to BLAS, cblas.h. */
 const columnMajor = 102;
 const noTranspose = 111;
@@ -37,7 +38,7 @@ const routines = {
 
 type Routine = (...values: unknown[]) => unknown;
 
-function load(): Record<keyof typeof routines, Routine> {
+function load(library: string): Record<keyof typeof routines, Routine> {
   try {
     const { gram, product, eigen, kernel, config, threads } = routines;
     const handle = koffi.load(library);
@@ -52,7 +53,7 @@ function load(): Record<keyof typeof routines, Routine> {
   } catch (cause) {
     throw new PennyweightError(
       'unavailable',
-      `${library} cannot be loaded: install libopenblas0-pthread for fast linear algebra.`,
+      `${library} cannot be used: install libopenblas0-pthread for fast linear algebra.`,
       { library },
       { cause },
     );
@@ -64,8 +65,8 @@ function load(): Record<keyof typeof routines, Routine> {
  * Determinism: OpenBLAS gives each entry of a product to one thread, so the same calls on the same machine and number of
  * threads give the same bits; another kernel rounds differently.
  */
-export function openOpenblas(): Openblas {
-  const call = load();
+export function openOpenblas(library = usualLibrary): Openblas {
+  const call = load(library);
   const kernel = String(call.kernel());
   const version = String(call.config()).split(' ').slice(0, 2).join(' ');
 

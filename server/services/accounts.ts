@@ -5,7 +5,7 @@ import { abilityFor, type MemberRole } from '#contract/access.ts';
 import type { Account, Me } from '#contract/account.ts';
 import { PennyweightError } from '#contract/error.ts';
 import { hashPassword } from '../access/password.ts';
-import type { Transaction } from '../db/database.ts';
+import type { Queryable, Transaction } from '../db/database.ts';
 import { account, campaign, roleAssignment, session, user } from '../db/schema/index.ts';
 import { recordAudit } from './audit.ts';
 import { authorise, type App, type Caller } from './context.ts';
@@ -64,4 +64,9 @@ export async function makeAccount(tx: Transaction, caller: Caller | null, person
 /** The new person as the one who acts, when an invitation is accepted. */
 export function selfCaller(person: { id: string; name: string; email: string }): Caller {
   return { user: person, principal: { userId: person.id, roles: [], token: null }, ability: abilityFor({ userId: person.id, roles: [], token: null }), via: 'session', requestId: null };
+}
+
+/** Whether anybody has an account: the demo is seeded only where nobody has. */
+export async function anyAccount(tx: Queryable): Promise<boolean> {
+  return (await tx.select({ id: user.id }).from(user).limit(1)).length > 0;
 }

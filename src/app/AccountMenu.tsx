@@ -21,7 +21,7 @@ export function AccountMenu() {
   };
   return (
     <MenuTrigger>
-      <Button kind="plain"><span className="max-w-44 truncate max-sm:max-w-32">{me?.user.name}</span></Button>
+      <Button kind="plain"><span className="max-w-44 truncate max-sm:max-w-24">{me?.user.name}</span></Button>
       <Popover placement="bottom end" className="border border-rule-strong bg-paper-raised">
         <Menu aria-label="Account" className="min-w-52 py-1 outline-none">
           <MenuItem className={item} onAction={() => void navigate('/tokens')}>Personal tokens</MenuItem>

@@ -25,7 +25,7 @@ export function Layout() {
     <SessionContext value={session}>
       <a href="#page" className="sr-only focus:not-sr-only focus:absolute focus:top-2 focus:left-2 focus:z-50 focus:bg-paper-raised focus:p-3">To the content</a>
       <header data-shell className="border-b border-rule-strong">
-        <div className="mx-auto flex max-w-7xl flex-wrap items-center gap-x-8 gap-y-1 px-4 py-2 sm:px-8">
+        <div className="mx-auto flex max-w-7xl flex-wrap items-center gap-x-2 gap-y-1 px-4 py-2 sm:gap-x-8 sm:px-8">
           <Link to="/" className="flex min-h-11 items-center gap-2.5 text-lg font-semibold tracking-tight"><Balance />Pennyweight</Link>
           {places.length > 0 && (
             <nav aria-label="Main" className="order-3 -mx-4 w-[calc(100%+2rem)] overflow-x-auto px-4 md:order-none md:mx-0 md:w-auto md:flex-1 md:px-0">

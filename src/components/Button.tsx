@@ -6,7 +6,7 @@ export type ButtonKind = 'primary' | 'plain' | 'quiet' | 'danger';
 const look: Record<ButtonKind, string> = {
   primary: 'border-ink bg-ink text-paper hover:border-brass-deep hover:bg-brass-deep',
   plain: 'border-rule-strong bg-paper-raised text-ink hover:border-ink hover:bg-brass-wash',
-  quiet: 'border-transparent px-1! text-brass-deep underline decoration-rule-strong underline-offset-4 hover:decoration-current',
+  quiet: 'border-transparent px-0! text-brass-deep underline decoration-rule-strong underline-offset-4 hover:decoration-current',
   danger: 'border-oxide bg-oxide text-paper hover:border-ink hover:bg-ink',
 };
 

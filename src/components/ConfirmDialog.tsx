@@ -1,15 +1,14 @@
 /** Says what will happen, and asks. */
-import type { ApiProblem } from '../api/api-problem.ts';
 import { Button } from './Button.tsx';
 import { Dialog } from './Dialog.tsx';
-import { ErrorPanel } from './ErrorPanel.tsx';
+import { ErrorPanel, type Refusal } from './ErrorPanel.tsx';
 
 interface Props {
   title: string;
   action: string;
   danger?: boolean;
   pending: boolean;
-  error: ApiProblem | null;
+  error: Refusal | null;
   onConfirm: () => void;
   onClose: () => void;
   children: React.ReactNode;

@@ -11,6 +11,7 @@ import { SortHeader } from './SortHeader.tsx';
 import { saveFile } from './save-file.ts';
 import { useTableState } from './table-state.ts';
 import { TextField } from './TextField.tsx';
+import { useTrailingText } from './trailing-text.ts';
 
 export interface Column<T> {
   id: string;
@@ -41,6 +42,7 @@ const rowHeight = 41;
 
 export function DataTable<T>({ caption, columns, rows, rowId, fileName, stateKey = '' }: Props<T>) {
   const [state, setState] = useTableState(stateKey);
+  const typing = useTrailingText(state.find, (text) => setState({ find: text }));
   const box = useRef<HTMLDivElement>(null);
   const shown = (column: Column<T>, row: T) => column.text?.(row) ?? String(column.value(row) ?? '');
   const definitions = useMemo<ColumnDef<T>[]>(
@@ -74,7 +76,7 @@ export function DataTable<T>({ caption, columns, rows, rowId, fileName, stateKey
   return (
     <section aria-label={caption} className="min-w-0 space-y-3">
       <div data-no-print className="flex flex-wrap items-end justify-between gap-x-6 gap-y-2">
-        <div className="w-full max-w-xs"><TextField label="Find in this table" type="search" value={find} onChange={(find) => setState({ find })} /></div>
+        <div className="w-full max-w-xs"><TextField label="Find in this table" type="search" {...typing} /></div>
         <div className="flex items-center gap-4 text-sm text-ink-soft">
           <span role="status" className="tabular-nums">{view.length === rows.length ? `${rows.length} rows` : `${view.length} of ${rows.length} rows`}</span>
           <Button kind="quiet" onPress={exportRows}>Export CSV</Button>

@@ -1,10 +1,15 @@
 /** A refusal of the server: its sentence, what it says of single fields, and the code to quote. Nothing when there is none. */
-import type { ApiProblem } from '../api/api-problem.ts';
+import type { Problem } from '#contract/error.ts';
 import { MarkShape } from './MarkShape.tsx';
 
 const shownDetails = ['file', 'path', 'index', 'time', 'expected', 'actual'];
 
-export function ErrorPanel({ error }: { error: ApiProblem | null | undefined }) {
+/** An error that carries the server's problem document. */
+export interface Refusal {
+  problem: Problem;
+}
+
+export function ErrorPanel({ error }: { error: Refusal | null | undefined }) {
   if (!error) return null;
   const { detail, code, issues = [], details = {}, requestId } = error.problem;
   const where = shownDetails.filter((key) => ['string', 'number'].includes(typeof details[key])).map((key) => `${key} ${String(details[key])}`);

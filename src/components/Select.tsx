@@ -19,7 +19,7 @@ export function Select({ label, value, options, onChange, placeholder = 'Choose'
   // A value that is none of the options stays visible instead of turning silently into the first option.
   const stranger = value === null || !options.some((option) => option.id === value);
   return (
-    <div className="min-w-0 space-y-1">
+    <div className="w-full max-w-md min-w-0 space-y-1 sm:w-auto">
       <label htmlFor={id} className={labelLook}>{label}</label>
       <select
         id={id} className={`${inputLook} cursor-pointer`} value={value ?? ''} disabled={isDisabled} aria-invalid={error ? true : undefined} aria-describedby={notes || undefined}

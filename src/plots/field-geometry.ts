@@ -1,20 +1,12 @@
 /** Where the nodes of an axis lie on the screen: cells between mid-points, so that a graded grid looks graded. */
 
-/** Borders of the cells around n nodes, as fractions 0..1; without coordinates, or with ones that are not monotone, evenly. */
+/** Borders of the cells around n rising nodes, as fractions 0..1; without coordinates, or where they do not rise, evenly. */
 export function cellBorders(nodes: number[] | null, count: number): Float64Array {
   const borders = Float64Array.from({ length: count + 1 }, (_, i) => i / count);
   if (!nodes || nodes.length !== count || count < 2) return borders;
-  const direction = Math.sign(nodes[count - 1]! - nodes[0]!);
-  for (let i = 1; i < count; i++) if ((nodes[i]! - nodes[i - 1]!) * direction <= 0) return borders;
+  for (let i = 1; i < count; i++) if (!(nodes[i]! > nodes[i - 1]!)) return borders;
   const low = nodes[0]! - (nodes[1]! - nodes[0]!) / 2, high = nodes[count - 1]! + (nodes[count - 1]! - nodes[count - 2]!) / 2;
-  for (let i = 0; i <= count; i++) {
-    const place = i === 0 ? low : i === count ? high : (nodes[i - 1]! + nodes[i]!) / 2;
-    borders[i] = direction > 0 ? (place - low) / (high - low) : (place - high) / (low - high);
-  }
-  if (direction < 0) {
-    // Descending axes are drawn ascending too: the caller looks cells up by place.
-    for (let i = 0; i <= count; i++) borders[i] = 1 - borders[i]!;
-  }
+  for (let i = 1; i < count; i++) borders[i] = ((nodes[i - 1]! + nodes[i]!) / 2 - low) / (high - low);
   return borders;
 }
 

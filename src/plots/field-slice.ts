@@ -23,13 +23,18 @@ export function sliceOf({ axes, values }: Pick<FieldValues, 'axes' | 'values'>, 
   const start = cut ? cut.index * strides[cut.axis] : 0;
   if (free.length === 0) return { x: axes[0] ?? point, y: null, values: values.slice(start, start + 1) };
   const [first, second] = free;
-  const along = ({ axis, i }: { axis: Axis; i: number }, k: number) => (k % axis.count) * strides[i];
-  if (!second) return { x: first.axis, y: null, values: Array.from({ length: first.axis.count }, (_, k) => values[start + along(first, k)]) };
+  // An axis whose coordinates fall is walked from its end, so that they grow to the right and upwards.
+  const along = ({ axis, i }: { axis: Axis; i: number }, k: number) => (falls(axis) ? axis.count - 1 - k : k) * strides[i];
+  if (!second) return { x: rising(first.axis), y: null, values: Array.from({ length: first.axis.count }, (_, k) => values[start + along(first, k)]) };
   const [right, up] = pointsUp(first.axis.name, second.axis.name) ? [first, second] : [second, first];
   const picture: (number | null)[] = [];
   for (let j = 0; j < up.axis.count; j += 1) for (let i = 0; i < right.axis.count; i += 1) picture.push(values[start + along(up, j) + along(right, i)]);
-  return { x: right.axis, y: up.axis, values: picture };
+  return { x: rising(right.axis), y: rising(up.axis), values: picture };
 }
+
+const falls = ({ nodes, count }: Axis) => nodes !== null && count > 1 && nodes.length === count && nodes[0] > nodes[count - 1];
+
+const rising = (axis: Axis): Axis => (axis.nodes && falls(axis) ? { ...axis, nodes: [...axis.nodes].reverse() } : axis);
 
 /** Does the second axis point up? By the alphabet where both names end in a letter of x, y, z; else the last axis runs to the right. */
 function pointsUp(first: string, second: string): boolean {

@@ -3,10 +3,12 @@ import { PennyweightError } from '#contract/error.ts';
 import type { ElementType } from '#contract/reading.ts';
 import type { TimeRuleId, TimeRuleResult } from '#contract/weights.ts';
 import { degreeOfExactness } from './degree.ts';
+import { energyError } from './energy-error.ts';
 import { timeRuleOf, timeRules } from './index.ts';
 import { providedWeights } from './provided.ts';
-import { describeSpacing, effectiveStamps, type Spacing } from './spacing.ts';
-import { accurateSum, assertStamps } from './stamps.ts';
+import { segmentsOf, weightsOf, type Segment } from './segment.ts';
+import { accurateSum } from './stamps.ts';
+import type { TimeRule } from './time-rule.ts';
 
 export interface JudgeOptions {
   /** weights that the archive brings */
@@ -17,96 +19,127 @@ export interface JudgeOptions {
   energies?: ArrayLike<number> | null;
 }
 
-/** Weights of a rule on each segment by itself; length m. Errors as assertStamps within a segment. */
-export function weightsBySegment(id: TimeRuleId, stamps: Float64Array, dtype: ElementType | null, segments: number[] = [0]): Float64Array {
-  const rule = timeRuleOf(id), weights = new Float64Array(stamps.length);
-  segments.forEach((from, s) => {
-    const part = stamps.subarray(from, segments[s + 1] ?? stamps.length);
-    assertStamps(part);
-    weights.set(rule.weights(effectiveStamps(part, describeSpacing(part, dtype))), from);
-  });
-  return weights;
+/** Weights of a rule on each segment by itself; length m. Errors: 'stamps-invalid', 'rule-not-admissible' (no such rule). */
+export function weightsBySegment(
+  id: TimeRuleId,
+  stamps: Float64Array,
+  dtype: ElementType | null,
+  segments?: number[],
+): Float64Array {
+  return weightsOf(timeRuleOf(id), segmentsOf(stamps, dtype, segments));
 }
 
-/** All rules, in the catalogue's order; 'provided' last, when given. `stamps` strictly increasing within each segment. */
-export function judgeTimeRules(stamps: Float64Array, dtype: ElementType | null, options: JudgeOptions = {}): TimeRuleResult[] {
-  const results = timeRules.map((rule) => judgeTimeRule(rule.id, stamps, dtype, options));
-  return options.provided ? [...results, judgeTimeRule('provided', stamps, dtype, options)] : results;
+/**
+ * All rules, in the catalogue's order; 'provided' last, when given. `stamps` strictly increasing within each segment; `dtype`
+ * is the type they are stored in, which tells their precision. O(m log m). Errors: 'stamps-invalid' with index and value.
+ */
+export function judgeTimeRules(
+  stamps: Float64Array,
+  dtype: ElementType | null,
+  options: JudgeOptions = {},
+): TimeRuleResult[] {
+  const segments = segmentsOf(stamps, dtype, options.segments);
+  const results = timeRules.map((rule) => judge(rule, segments, options));
+  return options.provided ? [...results, judgeProvided(segments, options.provided)] : results;
 }
 
-export function judgeTimeRule(id: TimeRuleId, stamps: Float64Array, dtype: ElementType | null, options: JudgeOptions = {}): TimeRuleResult {
-  if (id === 'provided') return judgeProvided(stamps, options);
-  const rule = timeRuleOf(id), segments = options.segments ?? [0];
-  const weights = weightsBySegment(id, stamps, dtype, segments);
-  const parts = segments.map((from, s) => stamps.subarray(from, segments[s + 1] ?? stamps.length));
-  const spacings = parts.map((part) => describeSpacing(part, dtype));
-  const assumptions = spacings.map((spacing) => rule.assumptions(spacing));
-  const refused = assumptions.find((each) => !each.holds);
-  const degrees = parts.map((part, s) => {
-    const even = effectiveStamps(part, spacings[s]);
-    return degreeOfExactness(rule, even, weights.subarray(segments[s], segments[s + 1] ?? stamps.length));
-  });
-  const negative = negatives(weights);
-  const why = negative.length > 0 ? negativeSentence(negative, stamps, weights) : (refused ?? assumptions[0]).why;
+/** One rule of the catalogue, or 'provided'. Errors as judgeTimeRules, and 'rule-not-admissible' for an id without a rule. */
+export function judgeTimeRule(
+  id: TimeRuleId,
+  stamps: Float64Array,
+  dtype: ElementType | null,
+  options: JudgeOptions = {},
+): TimeRuleResult {
+  const segments = segmentsOf(stamps, dtype, options.segments);
+  return id === 'provided'
+    ? judgeProvided(segments, options.provided ?? [])
+    : judge(timeRuleOf(id), segments, options);
+}
+
+function judge(rule: TimeRule, segments: Segment[], { energies }: JudgeOptions): TimeRuleResult {
+  const weights = weightsOf(rule, segments);
+  const assumed = segments.map(({ spacing }) => rule.assumptions(spacing));
+  const refused = assumed.find(({ holds }) => !holds);
+  const negative = negativeSentence(weights, segments);
   return {
-    id, admissible: !refused && negative.length === 0, why, weights: Array.from(weights), mass: null,
-    degree: degrees.some((degree) => degree === null) ? null : Math.min(...(degrees as number[])),
-    ...figures(weights), holdout_error: null,
-    energy_error: options.energies ? energyError(id, parts, spacings, segments, options.energies, weights, dtype) : null,
+    id: rule.id,
+    admissible: !refused && !negative,
+    why: negative ?? (refused ?? assumed[0]).why,
+    weights: Array.from(weights),
+    mass: null,
+    degree: least(segments, ({ stamps, from, to }) =>
+      degreeOfExactness(stamps, weights.subarray(from, to), rule.panels?.(stamps)),
+    ),
+    ...figures(weights),
+    energy_error: energies ? energyError(rule, segments, energies) : null,
+    holdout_error: null,
   };
 }
 
-function judgeProvided(stamps: Float64Array, options: JudgeOptions): TimeRuleResult {
-  const given = options.provided ?? [];
+function judgeProvided(segments: Segment[], given: ArrayLike<number>): TimeRuleResult {
+  const m = segments[segments.length - 1].to;
+  const usable = given.length === m && Array.from(given).every(Number.isFinite);
+  const unscaled = usable ? Float64Array.from(given) : new Float64Array(0);
+  const result = { id: 'provided' as const, mass: null, energy_error: null, holdout_error: null };
+  const refuse = (why: string): TimeRuleResult => ({
+    ...result,
+    admissible: false,
+    why,
+    weights: Array.from(unscaled),
+    degree: null,
+    ...figures(unscaled),
+  });
+  const negative = negativeSentence(unscaled, segments);
+  if (negative) return refuse(negative);
+  const weights = new Float64Array(m);
+  let why = '';
   try {
-    const { weights, why } = providedWeights(stamps, given);
-    return { id: 'provided', admissible: true, why, weights: Array.from(weights), mass: null, degree: degreeOfExactness({ local: false, weights: () => weights }, stamps, weights), ...figures(weights), energy_error: null, holdout_error: null };
+    if (given.length !== m) providedWeights(new Float64Array(m).map((_, j) => j), given);
+    for (const { from, to, stamps } of segments) {
+      const scaled = providedWeights(stamps, Array.from(given).slice(from, to));
+      weights.set(scaled.weights, from);
+      why ||= scaled.why;
+    }
   } catch (error) {
     if (!(error instanceof PennyweightError)) throw error;
-    return { id: 'provided', admissible: false, why: error.message, weights: [], mass: null, degree: null, effective: 0, negative: 0, min: 0, max: 0, sum: 0, energy_error: null, holdout_error: null };
+    return refuse(error.message);
   }
+  const degree = least(segments, ({ stamps, from, to }) => degreeOfExactness(stamps, weights.subarray(from, to)));
+  return { ...result, admissible: true, why, weights: Array.from(weights), degree, ...figures(weights) };
 }
 
-function negatives(weights: Float64Array): number[] {
-  const found: number[] = [];
-  for (let j = 0; j < weights.length; j++) if (weights[j] < 0) found.push(j);
-  return found;
+/** A record is exact to the least degree of its segments; null where one is not exact for constants. */
+function least(segments: Segment[], degreeOf: (segment: Segment) => number | null): number | null {
+  let degree = Infinity;
+  for (const segment of segments) degree = Math.min(degree, degreeOf(segment) ?? -1);
+  return degree < 0 ? null : degree;
 }
 
-function negativeSentence(negative: number[], stamps: Float64Array, weights: Float64Array): string {
-  const first = negative[0], where = `snapshot ${first} at t = ${Number(stamps[first].toPrecision(6))} has ${weights[first].toPrecision(3)}`;
-  return `${negative.length} negative weight${negative.length === 1 ? '' : 's'} (${where}): a snapshot is multiplied by the square root of its weight, so the rule cannot be used here.`;
+/** How many weights are negative and where the first is; null where none is. */
+function negativeSentence(weights: Float64Array, segments: Segment[]): string | null {
+  const count = weights.reduce((total, weight) => total + (weight < 0 ? 1 : 0), 0);
+  if (count === 0) return null;
+  const first = weights.findIndex((weight) => weight < 0);
+  const segment = segments.find(({ to }) => first < to)!;
+  const time = Number(segment.stamps[first - segment.from].toPrecision(6));
+  return `${count} negative weight${count === 1 ? '' : 's'} (snapshot ${first} at t = ${time} has ${weights[first].toPrecision(3)}): a snapshot is multiplied by the square root of its weight, so the rule cannot be used here.`;
 }
 
 /** Effective share (sum a)^2 / (m sum a^2) (L. Kish, Survey Sampling, 1965, effective sample size), extremes and sum. */
 function figures(weights: Float64Array): Pick<TimeRuleResult, 'effective' | 'negative' | 'min' | 'max' | 'sum'> {
-  const sum = accurateSum(weights), squares = accurateSum(weights.map((a) => a * a));
-  let min = Infinity, max = -Infinity;
-  for (const a of weights) {
-    min = Math.min(min, a);
-    max = Math.max(max, a);
+  const m = weights.length;
+  if (m === 0) return { effective: 0, negative: 0, min: 0, max: 0, sum: 0 };
+  let min = Infinity;
+  let max = -Infinity;
+  let negative = 0;
+  for (const weight of weights) {
+    min = Math.min(min, weight);
+    max = Math.max(max, weight);
+    if (weight < 0) negative++;
   }
-  return { effective: squares > 0 ? (sum * sum) / (weights.length * squares) : 0, negative: negatives(weights).length, min, max, sum };
-}
-
-/**
- * Relative change of the mean energy when the same rule sees every other snapshot: a cautious estimate, since the finer value is
- * better than the coarser one. Segments with an even number of snapshots leave their last one out of both; null when no segment
- * has five snapshots.
- */
-function energyError(id: TimeRuleId, parts: Float64Array[], spacings: Spacing[], segments: number[], energies: ArrayLike<number>, weights: Float64Array, dtype: ElementType | null): number | null {
-  let fine = 0, coarse = 0, tested = false;
-  parts.forEach((part, s) => {
-    const odd = part.length % 2 ? part.length : part.length - 1;
-    if (odd < 5) return;
-    tested = true;
-    const even = effectiveStamps(part, spacings[s]).slice(0, odd);
-    const same = odd === part.length ? weights.subarray(segments[s], segments[s] + odd) : weightsBySegment(id, even, dtype);
-    const halved = weightsBySegment(id, even.filter((_, j) => j % 2 === 0), dtype);
-    for (let j = 0; j < odd; j++) {
-      fine += same[j] * energies[segments[s] + j];
-      if (j % 2 === 0) coarse += halved[j / 2] * energies[segments[s] + j];
-    }
-  });
-  return tested && fine > 0 ? Math.abs(fine - coarse) / fine : null;
+  const sum = accurateSum(weights);
+  // Scaled by the largest, so that squares neither vanish nor overflow.
+  const scale = Math.max(max, -min) || 1;
+  const squares = accurateSum(weights.map((weight) => (weight / scale) ** 2));
+  return { effective: squares > 0 ? (sum / scale) ** 2 / (m * squares) : 0, negative, min, max, sum };
 }

@@ -1,4 +1,0 @@
-import { portable } from '../../../server/linalg/portable.ts';
-import { conformance } from './conformance.ts';
-
-conformance(portable);
