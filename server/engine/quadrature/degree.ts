@@ -9,7 +9,13 @@ const highest = 12;
  * P_k at rounded nodes, and more where the stamps lie far from zero compared with the interval, since their own rounding then
  * moves the nodes. -1 when not even constants are exact. P_k by the three-term recurrence, Abramowitz & Stegun 22.7.10.
  */
-function exactTo(nodes: ArrayLike<number>, weights: ArrayLike<number>, begin: number, end: number, most: number): number {
+function exactTo(
+  nodes: ArrayLike<number>,
+  weights: ArrayLike<number>,
+  begin: number,
+  end: number,
+  most: number,
+): number {
   const m = nodes.length;
   const half = (end - begin) / 2;
   const middle = begin + half;
@@ -38,7 +44,11 @@ function exactTo(nodes: ArrayLike<number>, weights: ArrayLike<number>, begin: nu
  * error of a composite rule for a parabola over the whole record falls below any tolerance. null when not even constants are
  * exact; 0 for a single stamp. Looks no higher than 12.
  */
-export function degreeOfExactness(stamps: Float64Array, weights: Float64Array, panels?: Iterable<Panel>): number | null {
+export function degreeOfExactness(
+  stamps: Float64Array,
+  weights: Float64Array,
+  panels?: Iterable<Panel>,
+): number | null {
   const m = stamps.length;
   if (m === 1) return 0;
   let degree = highest;

@@ -17,7 +17,5 @@ export const equal: TimeRule = {
         : `the spacing varies by a factor ${ratio.toPrecision(3)}: densely sampled times count too much.`,
   }),
   weights: (stamps) =>
-    stamps.length === 1
-      ? Float64Array.of(1)
-      : new Float64Array(stamps.length).fill(durationOf(stamps) / stamps.length),
+    stamps.length === 1 ? Float64Array.of(1) : new Float64Array(stamps.length).fill(durationOf(stamps) / stamps.length),
 };

@@ -13,6 +13,11 @@ export const timeRules: readonly TimeRule[] = [equal, trapezoid, simpson, simpso
 /** Errors: 'rule-not-admissible' for an id without a rule from stamps. */
 export function timeRuleOf(id: TimeRuleId): TimeRule {
   const rule = timeRules.find((each) => each.id === id);
-  if (!rule) throw new PennyweightError('rule-not-admissible', `The time rule "${id}" is not available: choose one of ${timeRules.map((each) => each.id).join(', ')}.`, { rule: id });
+  if (!rule)
+    throw new PennyweightError(
+      'rule-not-admissible',
+      `The time rule "${id}" is not available: choose one of ${timeRules.map((each) => each.id).join(', ')}.`,
+      { rule: id },
+    );
   return rule;
 }

@@ -5,8 +5,8 @@ import type { TimeRuleId, TimeRuleResult } from '#contract/weights.ts';
 import { degreeOfExactness } from './degree.ts';
 import { energyError } from './energy-error.ts';
 import { timeRuleOf, timeRules } from './index.ts';
-import { providedWeights } from './provided.ts';
-import { segmentsOf, weightsOf, type Segment } from './segment.ts';
+import { assertProvided, providedWeights } from './provided.ts';
+import { segmentsOf, usualInterval, weightsOf, type Segment } from './segment.ts';
 import { accurateSum } from './stamps.ts';
 import type { TimeRule } from './time-rule.ts';
 
@@ -51,9 +51,7 @@ export function judgeTimeRule(
   options: JudgeOptions = {},
 ): TimeRuleResult {
   const segments = segmentsOf(stamps, dtype, options.segments);
-  return id === 'provided'
-    ? judgeProvided(segments, options.provided ?? [])
-    : judge(timeRuleOf(id), segments, options);
+  return id === 'provided' ? judgeProvided(segments, options.provided ?? []) : judge(timeRuleOf(id), segments, options);
 }
 
 function judge(rule: TimeRule, segments: Segment[], { energies }: JudgeOptions): TimeRuleResult {
@@ -78,26 +76,26 @@ function judge(rule: TimeRule, segments: Segment[], { energies }: JudgeOptions):
 
 function judgeProvided(segments: Segment[], given: ArrayLike<number>): TimeRuleResult {
   const m = segments[segments.length - 1].to;
-  const usable = given.length === m && Array.from(given).every(Number.isFinite);
-  const unscaled = usable ? Float64Array.from(given) : new Float64Array(0);
   const result = { id: 'provided' as const, mass: null, energy_error: null, holdout_error: null };
+  const shown =
+    given.length === m && Number.isFinite(accurateSum(given)) ? Float64Array.from(given) : new Float64Array(0);
   const refuse = (why: string): TimeRuleResult => ({
     ...result,
     admissible: false,
     why,
-    weights: Array.from(unscaled),
+    weights: Array.from(shown),
     degree: null,
-    ...figures(unscaled),
+    ...figures(shown),
   });
-  const negative = negativeSentence(unscaled, segments);
+  const negative = negativeSentence(shown, segments);
   if (negative) return refuse(negative);
   const weights = new Float64Array(m);
   let why = '';
   try {
-    if (given.length !== m) providedWeights(new Float64Array(m).map((_, j) => j), given);
+    assertProvided(given, m);
     for (const { from, to, stamps } of segments) {
-      const scaled = providedWeights(stamps, Array.from(given).slice(from, to));
-      weights.set(scaled.weights, from);
+      const scaled = providedWeights(stamps, shown.subarray(from, to));
+      weights.set(stamps.length === 1 ? [usualInterval(segments)] : scaled.weights, from);
       why ||= scaled.why;
     }
   } catch (error) {

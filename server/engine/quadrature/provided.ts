@@ -5,17 +5,8 @@ import { accurateSum, assertStamps, durationOf } from './stamps.ts';
 /** Share by which the sum may miss the duration before it is said; common practice, no source. */
 const sumTolerance = 0.01;
 
-/**
- * Weights scaled so that their sum is the duration, as every rule's are; `why` says when that changed them.
- * Errors: 'stamps-invalid' as assertStamps; 'weights-invalid' with { index, value } for a wrong length, a value that is not
- * finite or negative, or a sum that is zero or beyond double precision.
- */
-export function providedWeights(
-  stamps: Float64Array,
-  given: ArrayLike<number>,
-): { weights: Float64Array; why: string } {
-  const m = stamps.length;
-  assertStamps(stamps);
+/** Errors: 'weights-invalid' with { index, value } for a wrong length, or a value that is not finite or negative. */
+export function assertProvided(given: ArrayLike<number>, m: number): void {
   if (given.length !== m)
     throw new PennyweightError(
       'weights-invalid',
@@ -29,8 +20,20 @@ export function providedWeights(
         `Provided time weight ${j} is ${given[j]}: weights must be finite and not negative, since snapshots are multiplied by their square root.`,
         { index: j, value: String(given[j]) },
       );
+}
+
+/**
+ * Weights scaled so that their sum is the duration, as every rule's are; `why` says when that changed them. Errors:
+ * 'stamps-invalid' as assertStamps; 'weights-invalid' as assertProvided, and for a sum that is zero or beyond double precision.
+ */
+export function providedWeights(
+  stamps: Float64Array,
+  given: ArrayLike<number>,
+): { weights: Float64Array; why: string } {
+  assertStamps(stamps);
+  assertProvided(given, stamps.length);
   const sum = accurateSum(given);
-  const duration = m === 1 ? 1 : durationOf(stamps);
+  const duration = stamps.length === 1 ? 1 : durationOf(stamps);
   const factor = duration / sum;
   if (!Number.isFinite(factor) || factor === 0)
     throw new PennyweightError(

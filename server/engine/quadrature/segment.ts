@@ -18,7 +18,11 @@ export interface Segment {
  * `starts`: first index of each segment, ascending, beginning with 0. Stamps must increase within a segment only.
  * Errors: 'stamps-invalid' as assertStamps, and for starts that are not such.
  */
-export function segmentsOf(stamps: Float64Array, dtype: ElementType | null, starts: readonly number[] = [0]): Segment[] {
+export function segmentsOf(
+  stamps: Float64Array,
+  dtype: ElementType | null,
+  starts: readonly number[] = [0],
+): Segment[] {
   const wrong = starts.findIndex(
     (start, s) => !Number.isInteger(start) || (s === 0 ? start !== 0 : start <= starts[s - 1]) || start > stamps.length,
   );
@@ -38,15 +42,20 @@ export function segmentsOf(stamps: Float64Array, dtype: ElementType | null, star
 }
 
 /**
- * Weights of a rule on each segment by itself, in the order of the record. A snapshot alone between two borders stands for
- * one usual interval, the mean of the others: the 1 of a lone record would be arbitrary beside them (our own convention).
+ * What a snapshot alone between two borders stands for: the mean interval of the other segments, since the 1 of a lone
+ * record would be arbitrary beside them (our own convention). 1 where every segment is a single snapshot.
  */
+export function usualInterval(segments: readonly Segment[]): number {
+  const intervals = segments.reduce((count, { stamps }) => count + stamps.length - 1, 0);
+  return intervals === 0 ? 1 : accurateSum(segments.map(({ spacing }) => spacing.duration)) / intervals;
+}
+
+/** Weights of a rule on each segment by itself, in the order of the record. */
 export function weightsOf(rule: Pick<TimeRule, 'weights'>, segments: readonly Segment[]): Float64Array {
   const weights = new Float64Array(segments[segments.length - 1].to);
-  const intervals = segments.reduce((count, { stamps }) => count + stamps.length - 1, 0);
-  const usual = intervals === 0 ? 1 : accurateSum(segments.map(({ spacing }) => spacing.duration)) / intervals;
+  const alone = usualInterval(segments);
   for (const { from, stamps } of segments) {
-    if (stamps.length === 1) weights[from] = usual;
+    if (stamps.length === 1) weights[from] = alone;
     else weights.set(rule.weights(stamps), from);
   }
   return weights;
