@@ -1,12 +1,15 @@
 import { createHash } from 'node:crypto';
 import { desc, eq } from 'drizzle-orm';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import type { Archive } from '#contract/archive.ts';
 import { routes } from '#contract/routes.ts';
 import { auditLog, survey as surveyTable } from '../../server/db/schema/index.ts';
 import { createTestApp, type Person, type TestApp } from '../setup/app.ts';
 import { startWorker, type TestWorker } from '../setup/worker.ts';
 import { openYard, type Yard } from './archive-yard.ts';
+
+// Each hand-in waits for a reading process, and other test files run beside.
+vi.setConfig({ testTimeout: 120_000, hookTimeout: 120_000 });
 
 let app: TestApp;
 let worker: TestWorker;
@@ -32,7 +35,7 @@ beforeAll(async () => {
   [steward, modeler] = [await app.makePerson({ [campaign]: ['steward'] }), await app.makePerson({ [campaign]: ['modeler'] })];
   yard = await openYard(app, campaign, contributor);
   sound = await yard.handIn('sound.h5', { solver: 'fields' });
-}, 60_000);
+});
 afterAll(async () => {
   await worker.stop();
   await app.close();
@@ -279,7 +282,7 @@ describe('grids of a campaign', () => {
     await app.founder.call(routes.putMember, { params: { campaign: slug, account: contributor.id }, body: { roles: ['contributor'] } });
     const both = await Promise.all([yard.handIn('sound.h5', { campaign: slug, run: 'a' }), yard.handIn('stretched.h5', { campaign: slug, run: 'b' })]);
     const later = both.sort((a, b) => a.createdAt.localeCompare(b.createdAt))[1];
-    await expect.poll(async () => idsOf(await yard.settled(later.id)), { timeout: 10_000 }).toContain('grid/differs');
+    await expect.poll(async () => idsOf(await yard.settled(later.id)), { timeout: 60_000 }).toContain('grid/differs');
   });
 });
 

@@ -10,7 +10,7 @@ import { routes } from '#contract/routes.ts';
 import { archive, delivery as deliveryTable, deliveryFile, job } from '../../server/db/schema/index.ts';
 import { keepDeliveries } from '../../server/services/delivery-upkeep.ts';
 import { createTestApp, unique, type Person, type TestApp } from '../setup/app.ts';
-import { freePort, startProcess, type ServerProcess } from '../setup/server-process.ts';
+import { endProcesses, freePort, startProcess, type ServerProcess } from '../setup/server-process.ts';
 import { TusSender } from './tus-sender.ts';
 
 let app: TestApp;
@@ -28,7 +28,10 @@ beforeAll(async () => {
   ({ secret } = await app.makeToken(contributor, { scopes: ['hand-in'] }));
   port = await freePort();
 });
-afterAll(() => app.close());
+afterAll(async () => {
+  await endProcesses();
+  await app.close();
+});
 
 const announce = (bytes: Uint8Array, name = 'a.npy', announcedSha256: string | null = sha256(bytes)): Promise<Delivery> =>
   contributor.call(routes.createDelivery, { params: { campaign }, body: { run: unique('run'), files: [{ name, bytes: bytes.length, sha256: announcedSha256 }] } });
@@ -52,12 +55,12 @@ describe('the web server, killed', () => {
   let server: ServerProcess;
   beforeAll(async () => {
     server = await start();
-  }, 60_000);
+  }, 120_000);
   afterAll(async () => {
     expect(await server.stop()).toBe(0);
   });
 
-  it('in the middle of a file: what is on the disk counts, and the rest follows', { timeout: 90_000 }, async () => {
+  it('in the middle of a file: what is on the disk counts, and the rest follows', { timeout: 180_000 }, async () => {
     const bytes = randomBytes(8_000_000);
     const delivery = await announce(bytes);
     const { id } = delivery.files[0];
@@ -76,7 +79,7 @@ describe('the web server, killed', () => {
     expect((await app.parts.storage.get(sha256(bytes))).equals(bytes)).toBe(true);
   });
 
-  it('at its last byte: one archive, all bytes', { timeout: 90_000 }, async () => {
+  it('at its last byte: one archive, all bytes', { timeout: 180_000 }, async () => {
     const bytes = randomBytes(3_000_000);
     const delivery = await announce(bytes);
     const { id } = delivery.files[0];
@@ -193,11 +196,12 @@ describe('the worker', () => {
   }
   const archiveRow = async (id: string) => (await app.parts.db.select().from(archive).where(eq(archive.id, id)))[0];
 
-  it('works alone; killed in the middle of a check, its successor takes that up at once', { timeout: 120_000 }, async () => {
+  it('works alone; killed in the middle of a check, its successor takes that up at once', { timeout: 240_000 }, async () => {
     const first = await startProcess('worker', app.parts.config);
     const waiting = startProcess('worker', app.parts.config);
+    waiting.catch(() => undefined);
     const { archive: id, state, job: itsJob } = await queuedCheck();
-    await expect.poll(state, { timeout: 30_000, interval: 20 }).toBe('running');
+    await expect.poll(state, { timeout: 60_000, interval: 20 }).toBe('running');
     expect(await Promise.race([waiting.then(() => 'working'), wait(10, 'waiting')])).toBe('waiting');
     await first.kill();
     expect(await state()).toBe('running');
@@ -208,9 +212,9 @@ describe('the worker', () => {
     expect(await archiveRow(id)).toMatchObject({ state: 'checked', snapshots: 64 });
   });
 
-  it('notices within a second that a job was cancelled, and stores nothing of it', { timeout: 90_000 }, async () => {
+  it('notices within a second that a job was cancelled, and stores nothing of it', { timeout: 180_000 }, async () => {
     const { archive: id, state, job: itsJob } = await queuedCheck();
-    await expect.poll(state, { timeout: 30_000, interval: 20 }).toBe('running');
+    await expect.poll(state, { timeout: 60_000, interval: 20 }).toBe('running');
     await app.founder.call(routes.cancelJob, { params: { job: (await itsJob()).id } });
     await wait(2000);
     expect(await state()).toBe('cancelled');
@@ -221,10 +225,10 @@ describe('the worker', () => {
     expect(await archiveRow(id)).toMatchObject({ state: 'checked' });
   });
 
-  it('leaves nothing stuck, and when it is asked to end its job waits for the next one', { timeout: 90_000 }, async () => {
+  it('leaves nothing stuck, and when it is asked to end its job waits for the next one', { timeout: 180_000 }, async () => {
     expect(await app.parts.db.select().from(job).where(sql`${job.state} = 'running'`)).toEqual([]);
     const { state } = await queuedCheck();
-    await expect.poll(state, { timeout: 30_000, interval: 20 }).toBe('running');
+    await expect.poll(state, { timeout: 60_000, interval: 20 }).toBe('running');
     expect(await worker.stop()).toBe(0);
     expect(['queued', 'done']).toContain(await state());
   });

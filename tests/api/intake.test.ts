@@ -1,7 +1,7 @@
 import { createHash, randomBytes } from 'node:crypto';
 import { readdir } from 'node:fs/promises';
 import { setTimeout as wait } from 'node:timers/promises';
-import { and, desc, eq, sql } from 'drizzle-orm';
+import { desc, eq, sql } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { Upload } from 'tus-js-client';
 import { tusPath, type Delivery } from '#contract/archive.ts';

@@ -15,7 +15,8 @@ import { auditLog, release as releaseTable } from '../../server/db/schema/index.
 import { makeWakeCampaign, type WakeCampaign } from '../setup/wake-campaign.ts';
 
 const run = promisify(execFile);
-vi.setConfig({ testTimeout: 60_000 });
+// Builds start reading processes, which a busy machine makes wait.
+vi.setConfig({ testTimeout: 120_000 });
 
 let wake: WakeCampaign;
 let folder: string;
@@ -31,7 +32,7 @@ beforeAll(async () => {
   address = { campaign: wake.campaign, dataset: wake.dataset, version };
   release = await wake.modeler.call(routes.getRelease, { params: address });
   ({ secret } = await wake.app.makeToken(wake.modeler, { scopes: ['pull'], campaign: wake.campaign }));
-}, 120_000);
+}, 300_000);
 afterAll(async () => {
   await wake.close();
   await rm(folder, { recursive: true, force: true });

@@ -14,7 +14,8 @@ import { removeOrphanedFolders } from '../../server/services/orphaned-folders.ts
 import type { App } from '../../server/services/context.ts';
 import { makeWakeCampaign, type WakeCampaign } from '../setup/wake-campaign.ts';
 
-vi.setConfig({ testTimeout: 90_000 });
+// Builds start reading processes, which a busy machine makes wait.
+vi.setConfig({ testTimeout: 120_000 });
 
 let wake: WakeCampaign;
 let adaptive: string, steady: string, elsewhere: string;
@@ -23,7 +24,7 @@ beforeAll(async () => {
   wake = await makeWakeCampaign(['adaptive', 'steady', 'elsewhere']);
   [adaptive, steady] = await Promise.all([wake.handIn('adaptive'), wake.handIn('steady')]);
   elsewhere = await wake.handIn('elsewhere');
-}, 120_000);
+}, 300_000);
 afterAll(() => wake.close());
 
 const preview = (recipe: unknown) => wake.modeler.call(routes.previewRecipe, { params: { campaign: wake.campaign }, body: { recipe } });

@@ -16,7 +16,8 @@ import { callerOfJob } from '../../server/services/job-runs.ts';
 import { approval, makeWakeCampaign, type WakeCampaign } from '../setup/wake-campaign.ts';
 
 const run = promisify(execFile);
-vi.setConfig({ testTimeout: 90_000 });
+// Builds start reading processes, which a busy machine makes wait.
+vi.setConfig({ testTimeout: 120_000 });
 
 let wake: WakeCampaign;
 let adaptive: string, steady: string, wide: string;
@@ -24,7 +25,7 @@ let adaptive: string, steady: string, wide: string;
 beforeAll(async () => {
   wake = await makeWakeCampaign(['adaptive', 'steady', 'wide']);
   [adaptive, steady, wide] = await Promise.all([wake.handIn('adaptive'), wake.handIn('steady'), wake.handIn('wide')]);
-}, 120_000);
+}, 300_000);
 afterAll(() => wake.close());
 
 const parts = () => wake.app.parts;
@@ -49,7 +50,7 @@ describe('a release of two runs, trapezoid, in double precision', () => {
   beforeAll(async () => {
     ({ draft, version } = await wake.released(wake.recipe([adaptive, steady], { split: { by: 'blocks', shares: [0.6, 0.2, 0.2], blocks: 8, guard: 1 } })));
     bag = await bagOf(draft);
-  }, 120_000);
+  }, 300_000);
 
   it('is what NumPy and SciPy make of the same files', async () => {
     const found = await byNumpy(bag, 'trapezoid', 'float64', 'adaptive', 'steady');
@@ -198,7 +199,10 @@ describe('a worker that is killed in mid-build', () => {
       const [folder] = await scratch();
       return folder ? stat(join(parts().config.storage, 'scratch', folder, 'raw.npy')).then((file) => file.size, () => 0) : 0;
     };
-    while ((await raw()) < 2 ** 20) await new Promise((resolve) => setTimeout(resolve, 5));
+    while ((await raw()) < 2 ** 20) {
+      expect(first.exitCode).toBeNull();
+      await new Promise((resolve) => setTimeout(resolve, 5));
+    }
     first.kill('SIGKILL');
     await once(first, 'exit');
     const builds = await parts().storage.folders('builds');
@@ -212,5 +216,5 @@ describe('a worker that is killed in mid-build', () => {
     second.kill('SIGTERM');
     await once(second, 'exit');
     wake.resumeWorker();
-  });
+  }, 240_000);
 });

@@ -7,7 +7,8 @@ import { auditLog, draft as draftTable, job as jobTable } from '../../server/db/
 import type { Person } from '../setup/app.ts';
 import { approval, makeWakeCampaign, type WakeCampaign } from '../setup/wake-campaign.ts';
 
-vi.setConfig({ testTimeout: 90_000 });
+// Builds start reading processes, which a busy machine makes wait.
+vi.setConfig({ testTimeout: 120_000 });
 
 let wake: WakeCampaign;
 let steady: string, gap: string, blemished: string;
@@ -17,7 +18,7 @@ beforeAll(async () => {
   wake = await makeWakeCampaign(['steady', 'gap', 'blemished']);
   [steady, gap, blemished] = await Promise.all([wake.handIn('steady'), wake.handIn('gap'), wake.handIn('blemished')]);
   sound = await wake.built(wake.recipe([steady]));
-}, 120_000);
+}, 300_000);
 afterAll(() => wake.close());
 
 const submit = (id: string, by: Person = wake.modeler, note = '') => by.call(routes.submitDraft, { params: { draft: id }, body: { note } });

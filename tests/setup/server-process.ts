@@ -1,5 +1,5 @@
 /** The web server or the worker in a process of its own, from source, so that a test can kill it as a power cut would. */
-import { spawn } from 'node:child_process';
+import { spawn, type ChildProcess } from 'node:child_process';
 import { once } from 'node:events';
 import { createServer, type AddressInfo } from 'node:net';
 import { fileURLToPath } from 'node:url';
@@ -26,6 +26,17 @@ export async function freePort(): Promise<number> {
   return port;
 }
 
+const alive = new Set<ChildProcess>();
+
+/** For afterAll: a test that failed half-way leaves no process behind. */
+export async function endProcesses(): Promise<void> {
+  await Promise.all([...alive].map(async (child) => {
+    const ended = once(child, 'exit');
+    child.kill('SIGKILL');
+    await ended;
+  }));
+}
+
 /** Resolves when it is at work. */
 export async function startProcess(part: 'main' | 'worker', config: Config, port = 0): Promise<ServerProcess> {
   const url = `http://127.0.0.1:${port}`;
@@ -38,6 +49,8 @@ export async function startProcess(part: 'main' | 'worker', config: Config, port
   });
   let words = '';
   const ended = once(child, 'exit') as Promise<[number | null]>;
+  alive.add(child);
+  void ended.then(() => alive.delete(child));
   await new Promise<void>((resolve, reject) => {
     const listen = (part_: Buffer) => {
       words = (words + part_.toString()).slice(-20_000);

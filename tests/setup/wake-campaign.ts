@@ -77,11 +77,11 @@ export async function makeWakeCampaign(records: WakeRecord[]): Promise<WakeCampa
       await person.sendFiles(delivery, () => file);
       const { archive } = await person.call(routes.getDelivery, { params: { delivery: delivery.id } });
       const { jobId } = await person.call(routes.getArchive, { params: { archive: archive! } });
-      await person.finished(jobId!, 60);
+      await person.finished(jobId!, 120);
       return archive!;
     },
     async ended(jobId) {
-      for (let attempt = 0; attempt < 600; attempt++) {
+      for (const end = Date.now() + 120_000; Date.now() < end; ) {
         const job = await app.founder.call(routes.getJob, { params: { job: jobId } });
         if (job.state !== 'queued' && job.state !== 'running') return job;
         await new Promise((resolve) => setTimeout(resolve, 50));

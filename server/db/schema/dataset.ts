@@ -31,7 +31,7 @@ export const draft = pgTable('draft', {
   /** who made it: builder and those who handed in its archives; kept up to date with the recipe */
   makers: jsonb('makers').$type<string[]>().notNull().default([]),
   build: jsonb('build').$type<BuildSummary>(),
-  /** recipe hash the build was made from; differs from recipeHash: stale */
+  /** of what the build was made: recipe, readings and parameters (inputsHash in services/draft-sources.ts); differs from theirs now: stale */
   buildHash: text('build_hash'),
   /** folder of the built arrays, below storage's builds */
   buildFolder: text('build_folder'),

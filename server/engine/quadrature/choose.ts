@@ -54,7 +54,7 @@ export function chooseTimeRule(
   if (exact && (exact.degree ?? 0) >= 3)
     return choice(
       'simpson',
-      'The spacing is even, so that Simpson is exact to degree 3 with positive weights.',
+      `${spacing.uniform || spacing.roundedOnly ? 'The spacing is even' : 'Each pair of intervals is even'}, so that Simpson is exact to degree 3 with positive weights.`,
       'trapezoid',
     );
   if (open('simpson-guarded') && spacing.gentleShare >= mostlyGentle)

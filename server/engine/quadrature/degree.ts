@@ -1,5 +1,6 @@
 /** Degree of exactness, found by trying it. */
 import type { Panel } from './panel.ts';
+import { accurateSum } from './stamps.ts';
 
 const highest = 12;
 
@@ -24,14 +25,10 @@ function exactTo(
   let before = new Float64Array(m);
   let values = new Float64Array(m).fill(1);
   for (let k = 0; k <= most; k++) {
-    let sum = 0;
-    let size = 1;
-    for (let j = 0; j < m; j++) {
-      const term = (weights[j] / half) * values[j];
-      sum += term;
-      size += Math.abs(term);
-    }
-    if (!(Math.abs(sum - (k === 0 ? 2 : 0)) <= 32 * Number.EPSILON * (k + 1) ** 2 * size * far)) return k - 1;
+    const terms = values.map((value, j) => (weights[j] / half) * value);
+    const size = terms.reduce((total, term) => total + Math.abs(term), 1);
+    const off = Math.abs(accurateSum(terms) - (k === 0 ? 2 : 0));
+    if (!(off <= 32 * Number.EPSILON * (k + 1) ** 2 * size * far)) return k - 1;
     const next = values.map((value, j) => ((2 * k + 1) * x[j] * value - k * before[j]) / (k + 1));
     before = values;
     values = next;

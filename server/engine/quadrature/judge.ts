@@ -77,8 +77,8 @@ function judge(rule: TimeRule, segments: Segment[], { energies }: JudgeOptions):
 function judgeProvided(segments: Segment[], given: ArrayLike<number>): TimeRuleResult {
   const m = segments[segments.length - 1].to;
   const result = { id: 'provided' as const, mass: null, energy_error: null, holdout_error: null };
-  const shown =
-    given.length === m && Number.isFinite(accurateSum(given)) ? Float64Array.from(given) : new Float64Array(0);
+  const brought = Float64Array.from(given);
+  const shown = brought.length === m && Number.isFinite(accurateSum(brought)) ? brought : new Float64Array(0);
   const refuse = (why: string): TimeRuleResult => ({
     ...result,
     admissible: false,
@@ -92,9 +92,9 @@ function judgeProvided(segments: Segment[], given: ArrayLike<number>): TimeRuleR
   const weights = new Float64Array(m);
   let why = '';
   try {
-    assertProvided(given, m);
+    assertProvided(brought, m);
     for (const { from, to, stamps } of segments) {
-      const scaled = providedWeights(stamps, shown.subarray(from, to));
+      const scaled = providedWeights(stamps, brought.subarray(from, to));
       weights.set(stamps.length === 1 ? [usualInterval(segments)] : scaled.weights, from);
       why ||= scaled.why;
     }

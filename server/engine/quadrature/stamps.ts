@@ -16,7 +16,7 @@ export function assertStamps(stamps: ArrayLike<number>): void {
     });
   let shortest = Infinity;
   let longest = 0;
-  let at = 0;
+  let at = 1;
   for (let j = 0; j < m; j++) {
     const value = stamps[j];
     if (!Number.isFinite(value))
@@ -44,7 +44,7 @@ export function assertStamps(stamps: ArrayLike<number>): void {
     );
 }
 
-/** Compensated sum (A. Neumaier, Z. Angew. Math. Mech. 54 (1974) 39-51): error about eps, not eps x length. */
+/** Compensated sum (A. Neumaier, Z. Angew. Math. Mech. 54 (1974) 39-51): error about eps, not eps x length. Infinite where it overflows. */
 export function accurateSum(values: ArrayLike<number>): number {
   let sum = 0;
   let correction = 0;
@@ -54,7 +54,7 @@ export function accurateSum(values: ArrayLike<number>): number {
     correction += Math.abs(sum) >= Math.abs(value) ? sum - next + value : value - next + sum;
     sum = next;
   }
-  return sum + correction;
+  return Number.isFinite(sum) ? sum + correction : sum;
 }
 
 /** t_m - t_1 */

@@ -8,7 +8,7 @@ import { ErrorPanel } from '../../components/ErrorPanel.tsx';
 import { Link } from '../../components/Link.tsx';
 import { Notice } from '../../components/Notice.tsx';
 import { TextField } from '../../components/TextField.tsx';
-import { requestReset } from './auth-requests.ts';
+import { requestReset } from '../../api/auth-requests.ts';
 import { EntryFrame } from './EntryFrame.tsx';
 
 export function ForgotPage() {

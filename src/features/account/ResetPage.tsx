@@ -9,7 +9,7 @@ import { ErrorPanel } from '../../components/ErrorPanel.tsx';
 import { Link } from '../../components/Link.tsx';
 import { Notice } from '../../components/Notice.tsx';
 import { TextField } from '../../components/TextField.tsx';
-import { resetPassword } from './auth-requests.ts';
+import { resetPassword } from '../../api/auth-requests.ts';
 import { EntryFrame } from './EntryFrame.tsx';
 
 export function ResetPage() {

@@ -10,7 +10,7 @@ import { Button } from '../../components/Button.tsx';
 import { ErrorPanel } from '../../components/ErrorPanel.tsx';
 import { Link } from '../../components/Link.tsx';
 import { TextField } from '../../components/TextField.tsx';
-import { signIn } from './auth-requests.ts';
+import { signIn } from '../../api/auth-requests.ts';
 import { EntryFrame } from './EntryFrame.tsx';
 
 export function SignInPage() {

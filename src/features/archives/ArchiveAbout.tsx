@@ -15,6 +15,7 @@ import { NumberField } from '../../components/NumberField.tsx';
 import { Quantity } from '../../components/Quantity.tsx';
 import { TimeStamp } from '../../components/TimeStamp.tsx';
 import { ReasonDialog } from '../../evidence/ReasonDialog.tsx';
+import { withValue } from '../../evidence/with-value.ts';
 import type { ArchiveOutlet } from './ArchivePage.tsx';
 
 export function ArchiveAbout() {
@@ -83,7 +84,7 @@ function RunParameters({ archive, mayCorrect }: { archive: ArchiveOutlet['archiv
         <div className="grid max-w-xl gap-3 sm:grid-cols-2">
           {names.map((name) => (
             <NumberField key={name} label={name} unit={unitOf(name)} value={edited[name] ?? null}
-              onChange={(value) => setEdited((now) => { const { [name]: _gone, ...rest } = now ?? {}; return ( value === null ? rest : { ...rest, [name]: value }); })} />
+              onChange={(value) => setEdited((now) => withValue(now ?? {}, name, value))} />
           ))}
         </div>
       )}

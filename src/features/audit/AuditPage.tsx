@@ -14,6 +14,7 @@ import { PageHeader } from '../../components/PageHeader.tsx';
 import { Select } from '../../components/Select.tsx';
 import { Skeleton } from '../../components/Skeleton.tsx';
 import { TextField } from '../../components/TextField.tsx';
+import { useTrailingText } from '../../components/trailing-text.ts';
 import { AuditEntryRow } from './AuditEntryRow.tsx';
 
 const AuditSummary = lazy(() => import('./AuditSummary.tsx'));
@@ -29,6 +30,7 @@ export function AuditPage() {
   const log = useRoute(routes.listAudit, {}, { ...query, before: before ? Number(before) : undefined, limit: 200 }, { placeholderData: keepPreviousData });
   const campaigns = useRoute(routes.listCampaigns);
   const set = (key: string, value: string) => setSearch((now) => { now.delete('before'); if (value) now.set(key, value); else now.delete(key); return now; }, { replace: true });
+  const text = useTrailingText(search.get('q') ?? '', (typed) => set('q', typed));
   const entries = log.data?.entries ?? [];
   const last = entries[entries.length - 1];
   return (
@@ -36,7 +38,7 @@ export function AuditPage() {
       <PageHeader title="Audit log" lead="Who changed what, when and why. The database refuses to change or remove an entry, and each one is hashed together with the one before." actions={<a className="text-brass-deep underline" href={pathTo(routes.exportAudit, {}, query)} download="audit-log.csv">Export as CSV</a>} />
       {ability.can('verify', 'AuditEntry') && <Verification />}
       <div className="mb-4 grid gap-3 sm:grid-cols-2 lg:grid-cols-5">
-        <TextField label="Search" type="search" value={search.get('q') ?? ''} onChange={(text) => set('q', text)} />
+        <TextField label="Search" type="search" {...text} />
         <Select label="Campaign" value={search.get('campaign') ?? ''} onChange={(value) => set('campaign', value)} options={[{ id: '', label: 'all' }, { id: 'organisation', label: 'the organisation' }, ...(campaigns.data?.campaigns ?? []).map((each) => ({ id: each.slug, label: each.title }))]} />
         <Select label="Object" value={search.get('objectType') ?? ''} onChange={(value) => set('objectType', value)} options={[{ id: '', label: 'all' }, ...objectTypes.map((type) => ({ id: type, label: type }))]} />
         <TextField label="From" type="datetime-local" value={localOf(search.get('from'))} onChange={(text) => set('from', text ? new Date(text).toISOString() : '')} />
@@ -67,6 +69,7 @@ export function AuditPage() {
 function localOf(iso: string | null): string {
   if (!iso) return '';
   const at = new Date(iso);
+  if (Number.isNaN(at.getTime())) return '';
   return new Date(at.getTime() - at.getTimezoneOffset() * 60_000).toISOString().slice(0, 16);
 }
 

@@ -4,14 +4,14 @@ import { routes } from '#contract/routes.ts';
 import { useRoute } from '../../api/route-query.ts';
 import { ErrorPanel } from '../../components/ErrorPanel.tsx';
 import { NumberField } from '../../components/NumberField.tsx';
+import { withValue } from '../../evidence/with-value.ts';
 import { SeverityMark } from '../../components/SeverityMark.tsx';
 import type { Severity } from '#contract/finding.ts';
 
 export function Thresholds({ policy, onChange, disabled }: { policy: CheckPolicy; onChange: (policy: CheckPolicy) => void; disabled: boolean }) {
   const checks = useRoute(routes.listChecks, {}, undefined, { staleTime: Infinity });
   const set = (check: string, name: string, value: number | null) => {
-    const { [name]: _, ...others } = policy.thresholds[check] ?? {};
-    onChange({ thresholds: { ...policy.thresholds, [check]: value === null ? others : { ...others, [name]: value } } });
+    onChange({ thresholds: { ...policy.thresholds, [check]: withValue(policy.thresholds[check] ?? {}, name, value) } });
   };
   return (
     <section aria-labelledby="thresholds-title" className="space-y-4">

@@ -10,6 +10,7 @@ import { ErrorPanel } from '../../components/ErrorPanel.tsx';
 import { bytesText } from '../../components/number-format.ts';
 import { NumberField } from '../../components/NumberField.tsx';
 import { TextField } from '../../components/TextField.tsx';
+import { withValue } from '../../evidence/with-value.ts';
 import { sendQueue } from './send-queue.ts';
 
 interface Chosen {
@@ -66,7 +67,7 @@ export function HandInForm({ campaign }: { campaign: Campaign }) {
         <TextField label="Solver (its reading is remembered)" value={solver} onChange={setSolver} />
         {campaign.parameters.map((parameter) => (
           <NumberField key={parameter.name} label={parameter.name} unit={parameter.unit} value={parameters[parameter.name] ?? null}
-            onChange={(value) => setParameters((now) => { const { [parameter.name]: _gone, ...rest } = now; return value === null ? rest : { ...rest, [parameter.name]: value }; })} />
+            onChange={(value) => setParameters((now) => withValue(now, parameter.name, value))} />
         ))}
         <div className="sm:col-span-2"><TextField label="Note" multiline rows={2} value={note} onChange={setNote} /></div>
       </div>

@@ -1,6 +1,7 @@
 /** The weighted spectrum against what theory says. */
 import { describe, expect, it } from 'vitest';
 import { PennyweightError } from '#contract/error.ts';
+import { spectrumResult } from '#contract/weights.ts';
 import { coefficientsOf, modesOf, projectionError, weightedSpectrum, type RowTileSource } from '../../../../server/engine/spectrum/spectrum.ts';
 import { portable } from '../../../../server/linalg/portable.ts';
 import { randomNumbers } from '../quadrature/stamp-sets.ts';
@@ -69,8 +70,46 @@ describe('weightedSpectrum', () => {
     expect(result.resolved).toBe(1);
     expect(result.rank).toEqual({ 0.9: 1, 0.99: 1, 0.999: 1, 0.9999: 1 });
   });
+  it('takes the rounding of single precision as the floor where it is larger', async () => {
+    const { matrix, a, w } = example(40, 6, 5), floor = async (epsilon?: number) => {
+      const { result, singularValues } = await weightedSpectrum(tilesOf(matrix, 40, 6), a, w, portable, epsilon);
+      return result.floor / singularValues[0];
+    };
+    expect(await floor()).toBeCloseTo(2 ** -26, 15);
+    expect(await floor(2 ** -23)).toBeCloseTo(2 ** -23, 15);
+  });
+  it('gives a snapshot of weight zero no part in the modes', async () => {
+    const { matrix, a, w } = example(30, 5, 6), n = 30;
+    a[2] = 0;
+    const without = Float64Array.from([...matrix.subarray(0, 2 * n), ...matrix.subarray(3 * n)]);
+    const [all, four] = [await weightedSpectrum(tilesOf(matrix, n, 5), a, w, portable), await weightedSpectrum(tilesOf(without, n, 4), a.filter((_, j) => j !== 2), w, portable)];
+    four.singularValues.forEach((sigma, k) => expect(all.singularValues[k] / sigma).toBeCloseTo(1, 12));
+    expect(all.result.resolved).toBe(4);
+    expect(Array.from(coefficientsOf(all, a, 4)).filter((_, k) => k % 5 === 2)).toEqual([0, 0, 0, 0]);
+  });
+  // Degenerate shapes and magnitudes that still have a spectrum: n, m, value, expected sigma_1
+  it.each([[1, 1, 3, 3], [5, 1, 1, Math.sqrt(5)], [1, 5, 1, Math.sqrt(5)], [2, 2, 1, 2], [3, 2, 1e150, Math.sqrt(6) * 1e150], [3, 2, 1e-140, Math.sqrt(6) * 1e-140]])('of a constant %i x %i matrix of %d', async (n, m, value, sigma) => {
+    const ones = (length: number) => new Float64Array(length).fill(1);
+    const { result } = await weightedSpectrum(tilesOf(ones(n * m).fill(value), n, m), ones(m), ones(n), portable);
+    expect(result.singular_values[0] / sigma).toBeCloseTo(1, 12);
+    expect(result).toMatchObject({ resolved: 1, rank: { 0.9: 1, 0.9999: 1 } });
+    expect(spectrumResult.safeParse(result).error).toBeUndefined();
+  });
+  it.each([[0, 3], [3, 0], [0, 0]])('refuses a %i x %i matrix', async (n, m) => {
+    await expect(weightedSpectrum(tilesOf(new Float64Array(0), n, m), new Float64Array(m), new Float64Array(n), portable)).rejects.toMatchObject({ code: 'matrix-invalid' });
+  });
+  it('names row and column of a value that is not finite', async () => {
+    const matrix = new Float64Array(30).fill(1);
+    matrix[2 * 10 + 8] = NaN;
+    await expect(weightedSpectrum(tilesOf(matrix, 10, 3), new Float64Array(3).fill(1), new Float64Array(10).fill(1), portable)).rejects.toMatchObject({ details: { row: 8, column: 2, value: 'NaN' } });
+  });
+  it('refuses tiles that do not cover the matrix', async () => {
+    const { matrix, a, w } = example(20, 3, 7), short = { ...tilesOf(matrix, 20, 3), tiles: tilesOf(matrix.slice(0, 42), 14, 3).tiles };
+    await expect(weightedSpectrum(short, a, w, portable)).rejects.toMatchObject({ code: 'matrix-invalid', details: { expected: 20, actual: 14 } });
+  });
   const one = new Float64Array(2).fill(1);
   it.each([
+    ['squares that overflow', [1e200, 1, 1, 1], one, one, 'matrix-invalid'], ['squares that vanish', [1e-200, 0, 0, 0], one, one, 'matrix-invalid'],
     ['all zero', [0, 0, 0, 0], one, one, 'matrix-invalid'], ['NaN', [1, NaN, 1, 1], one, one, 'matrix-invalid'], ['infinite', [1, 1, Infinity, 1], one, one, 'matrix-invalid'],
     ['a negative weight', [1, 1, 1, 1], Float64Array.of(1, -1), one, 'weights-invalid'], ['a weight that is not a number', [1, 1, 1, 1], one, Float64Array.of(NaN, 1), 'weights-invalid'],
     ['too few weights', [1, 1, 1, 1], Float64Array.of(1), one, 'weights-invalid'],
@@ -80,7 +119,9 @@ describe('weightedSpectrum', () => {
     expect((refusal as PennyweightError).code).toBe(code);
   });
   it('gives the projection error by rank', () => {
-    const errors = projectionError([3, 4 / 1, 0].sort((x, y) => y - x));
+    const errors = projectionError([4, 3, 0]);
     expect(Array.from(errors)).toEqual([1, 0.6, 0, 0]);
+    expect(Array.from(projectionError([0, 0]))).toEqual([0, 0, 0]);
+    expect(projectionError([1, 1e-12])[1]).toBeCloseTo(1e-12, 24);
   });
 });

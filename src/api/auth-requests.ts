@@ -1,5 +1,5 @@
 /** The few calls to better-auth, which has its own addresses below /api/auth. */
-import { ApiProblem, noConnection } from '../../api/api-problem.ts';
+import { ApiProblem, noConnection } from './api-problem.ts';
 
 async function post(path: string, body: unknown): Promise<void> {
   let response: Response;
