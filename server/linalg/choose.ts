@@ -58,7 +58,8 @@ function failureOf(kernel: string | null, cause: unknown): { why: string; lost: 
     code = null,
   } = cause as { stderr?: string; signal?: string | null; code?: unknown };
   const said = signal ? `the process ended by ${signal}` : stderr.trim() || String(cause);
-  return { why: `the kernel ${kernel ?? 'of its own choice'} failed its proof: ${said}`, lost: code === 2 };
+  if (code === 2) return { why: said, lost: true };
+  return { why: `the kernel ${kernel ?? 'of its own choice'} failed its proof: ${said}`, lost: false };
 }
 
 /** Not remembered: each call proves and opens anew. */

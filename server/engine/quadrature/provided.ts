@@ -32,7 +32,7 @@ export function providedWeights(
 ): { weights: Float64Array; why: string } {
   assertStamps(stamps);
   assertProvided(given, stamps.length);
-  const sum = accurateSum(given);
+  const sum = accurateSum(Float64Array.from(given));
   const duration = stamps.length === 1 ? 1 : durationOf(stamps);
   const factor = duration / sum;
   if (!Number.isFinite(factor) || factor === 0)

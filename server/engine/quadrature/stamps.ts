@@ -45,11 +45,10 @@ export function assertStamps(stamps: ArrayLike<number>): void {
 }
 
 /** Compensated sum (A. Neumaier, Z. Angew. Math. Mech. 54 (1974) 39-51): error about eps, not eps x length. Infinite where it overflows. */
-export function accurateSum(values: ArrayLike<number>): number {
+export function accurateSum(values: Float64Array | readonly number[]): number {
   let sum = 0;
   let correction = 0;
-  for (let i = 0; i < values.length; i++) {
-    const value = values[i];
+  for (const value of values) {
     const next = sum + value;
     correction += Math.abs(sum) >= Math.abs(value) ? sum - next + value : value - next + sum;
     sum = next;

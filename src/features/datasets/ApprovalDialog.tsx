@@ -45,7 +45,7 @@ export function ApprovalDialog({ draft, open, touched, onClose }: { draft: Draft
         <ErrorPanel error={approve.error} />
         <div className="flex justify-end gap-2">
           <Button kind="quiet" onPress={onClose}>Cancel</Button>
-          <Button kind="primary" type="submit" isPending={approve.isPending}>Approve and release</Button>
+          <Button kind="primary" type="submit" isPending={approve.isPending} isDisabled={campaign.isPending}>Approve and release</Button>
         </div>
       </form>
     </Dialog>
