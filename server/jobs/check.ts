@@ -10,16 +10,16 @@ import type { Survey } from '../engine/survey.ts';
 import { archiveToCheck, keepCheck, type CheckedArchive, type CheckResult, type ChosenReading } from '../services/archive-check.ts';
 import type { OpenArchive } from '../services/archive-reader.ts';
 import type { App } from '../services/context.ts';
-import { otherGrids } from '../services/grids.ts';
+import { earlierOnOtherGrids, otherGrids } from '../services/grids.ts';
 import { openArchiveFiles } from '../services/reading-pool.ts';
 import { parametersOf } from '../services/run-parameters.ts';
-import { sameReading } from '../services/survey-store.ts';
+import { gridHash, sameReading } from '../services/survey-store.ts';
 import type { JobHandle, JobHandler } from './handle.ts';
 
 /** Refusals that say something of the archive; any other is a failure of ours. */
 const ofTheArchive = new Set<ErrorCode>(['file-unreadable', 'unsupported-format', 'file-too-large', 'limit-exceeded', 'invalid-input', 'stamps-invalid', 'matrix-invalid']);
 
-type Known = Omit<CheckResult, 'state' | 'findings'>;
+type Known = Omit<CheckResult, 'state' | 'findings' | 'comparedWith'>;
 
 export const check: JobHandler = async (app, job) => {
   const checked = await archiveToCheck(app, job.subjectId);
@@ -39,11 +39,13 @@ export const check: JobHandler = async (app, job) => {
   job.signal.throwIfAborted();
   const { survey } = known;
   const reading = known.chosen?.reading ?? checked.row.reading;
+  const grid = survey ? gridHash(survey) : null;
+  const comparedWith = grid === null ? [] : await earlierOnOtherGrids(app.db, checked.row, grid);
   const findings = judgeAll({
     survey, failure, checksum: checked.checksum, demands: checked.demands, parameters: parametersOf(checked.run.parameters, reading),
     otherGrids: survey ? await otherGrids(app, checked.row, survey) : [], timeRule: null, archive: checked.row.id,
   }, checked.policy);
-  await keepCheck(app, job.caller, job.id, checked, { ...known, state: failure ? 'unreadable' : 'checked', findings });
+  await keepCheck(app, job.caller, job.id, checked, { ...known, state: failure ? 'unreadable' : 'checked', findings, comparedWith });
 };
 
 /** The reader's clauses begin in lower case; those that begin with the name of a file stay as they are. */

@@ -13,7 +13,7 @@ import { recordAudit } from './audit.ts';
 import { storable } from './storable.ts';
 import type { App, Caller } from './context.ts';
 import { replaceFindings } from './findings.ts';
-import { uncomparedArchives } from './grids.ts';
+import { earlierOnOtherGrids, lockGrids, uncomparedArchives } from './grids.ts';
 import { mustStillRun } from './job-runs.ts';
 import { newestSavedReading } from './readings.ts';
 import { gridHash, keepSurvey, loadSurvey, packSurvey } from './survey-store.ts';
@@ -45,6 +45,8 @@ export interface CheckResult {
   chosen: ChosenReading | null;
   survey: Survey | null;
   findings: Finding[];
+  /** earlier archives on other grids that it was compared with */
+  comparedWith: string[];
 }
 
 export async function archiveToCheck(app: App, id: string): Promise<CheckedArchive> {
@@ -95,15 +97,19 @@ export async function keepCheck(app: App, caller: Caller, jobId: string, checked
       action: 'archive.check', objectType: 'archive', objectId: row.id, label: row.name, campaignId: row.campaignId,
       before: { state: row.state, reading: row.readingSource }, after: { state, reading: chosen?.source ?? row.readingSource, findings: countOf(findings), checks: [...new Set(findings.map(({ id }) => id))], job: jobId },
     });
-    if (survey && packed) await keepNewSurvey(app, tx, caller, row, survey, packed);
+    if (survey && packed) await keepNewSurvey(app, tx, caller, row, survey, packed, result.comparedWith);
     if (!survey) await tx.delete(surveyTable).where(eq(surveyTable.archiveId, row.id));
   });
 }
 
-async function keepNewSurvey(app: App, tx: Transaction, caller: Caller, row: ArchiveRow, survey: Survey, packed: Awaited<ReturnType<typeof packSurvey>>): Promise<void> {
+/** Grids that became known while this archive was checked have not been compared with it: whichever came later is checked again. */
+async function keepNewSurvey(app: App, tx: Transaction, caller: Caller, row: ArchiveRow, survey: Survey, packed: Awaited<ReturnType<typeof packSurvey>>, comparedWith: string[]): Promise<void> {
   const grid = gridHash(survey);
+  await lockGrids(tx, row.campaignId);
   const [before] = await tx.select({ grid: surveyTable.gridHash }).from(surveyTable).where(eq(surveyTable.archiveId, row.id));
   await keepSurvey(tx, row.id, survey, packed);
   if (grid === null || grid === before?.grid) return;
   for (const later of await uncomparedArchives(tx, row, grid)) await enqueueCheck(app, tx, caller, later);
+  const missed = (await earlierOnOtherGrids(tx, row, grid)).some((id) => !comparedWith.includes(id));
+  if (missed) await enqueueCheck(app, tx, caller, row);
 }
