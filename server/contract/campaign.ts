@@ -17,17 +17,32 @@ export const campaignParameter = z
 export type CampaignField = z.infer<typeof campaignField>;
 export type CampaignParameter = z.infer<typeof campaignParameter>;
 
+/** What a campaign can be given, without defaults: an update changes only what it names. */
+const settings = {
+  title: name,
+  description: z.string().trim().max(4000),
+  quotaBytes: z.number().int().positive(),
+  fields: z.array(campaignField).max(100),
+  parameters: z.array(campaignParameter).max(50),
+  policy: checkPolicy,
+  handlingLabel: z.string().trim().max(80),
+  contact: z.string().trim().max(200),
+  licence: z.string().trim().max(200),
+};
+
 export const newCampaign = z.object({
-  slug, title: name, description: z.string().trim().max(4000).default(''),
-  quotaBytes: z.number().int().positive().default(200 * 2 ** 30),
-  fields: z.array(campaignField).max(100).default([]),
-  parameters: z.array(campaignParameter).max(50).default([]),
-  policy: checkPolicy.default({ thresholds: {} }),
-  handlingLabel: z.string().trim().max(80).default('internal'),
-  contact: z.string().trim().max(200).default(''),
-  licence: z.string().trim().max(200).default(''),
+  slug,
+  ...settings,
+  description: settings.description.default(''),
+  quotaBytes: settings.quotaBytes.default(200 * 2 ** 30),
+  fields: settings.fields.default([]),
+  parameters: settings.parameters.default([]),
+  policy: settings.policy.default({ thresholds: {} }),
+  handlingLabel: settings.handlingLabel.default('internal'),
+  contact: settings.contact.default(''),
+  licence: settings.licence.default(''),
 });
-export const campaignUpdate = newCampaign.omit({ slug: true }).partial().extend({ version: z.number().int(), reason: z.string().trim().max(2000).optional() });
+export const campaignUpdate = z.object(settings).partial().extend({ version: z.number().int(), reason: z.string().trim().max(2000).optional() });
 
 export const campaign = newCampaign.extend({
   id, version: z.number().int(), createdAt: timestamp, usedBytes: z.number(),

@@ -46,6 +46,14 @@ describe('a campaign', () => {
     expect(await entries(made.id, 'campaign.update')).toMatchObject([{ before: { title: 'Before' }, after: { title: kept.title }, reason: `because of ${kept.title}` }]);
   });
 
+  it('keeps every setting that a change does not name', async () => {
+    const settings = { description: 'A jet.', quotaBytes: 5 * 2 ** 30, fields: [{ name: 'u', unit: 'm/s', min: null, max: null, required: true }], policy: { thresholds: { 'time/gap': { ratio: 4 } } }, handlingLabel: 'confidential', contact: 'A. Person', licence: 'CC-BY-4.0' };
+    const made = await app.makeCampaign(settings);
+    const changed = await app.founder.call(routes.updateCampaign, { params: { campaign: made.slug }, body: { version: made.version, title: 'Renamed' } });
+    expect(changed).toMatchObject({ ...settings, title: 'Renamed' });
+    expect((await entries(made.id, 'campaign.update'))[0].after).toEqual({ title: 'Renamed' });
+  });
+
   it.each([
     ['a field that is there twice', { fields: [{ name: 'u' }, { name: 'u' }] }, 'u'],
     ['limits the wrong way round', { fields: [{ name: 'u', min: 2, max: 1 }] }, 'lower limit'],

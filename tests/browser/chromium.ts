@@ -38,5 +38,5 @@ export async function signIn(application: RunningApplication, context: BrowserCo
 /** Waits for a text in the page, and says what the page showed when it does not come. */
 export async function shows(page: Page, text: string | RegExp, timeout = 60_000): Promise<void> {
   const found = await page.getByText(text).first().waitFor({ timeout }).then(() => true, () => false);
-  if (!found) expect.fail(`The page ${page.url()} does not show ${String(text)}. It shows: ${(await page.locator('main').innerText()).slice(0, 1500)}`);
+  if (!found) expect.fail(`The page ${page.url()} does not show ${String(text)}. It shows: ${(await page.locator('body').innerText()).slice(-2500)}`);
 }
